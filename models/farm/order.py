@@ -1,0 +1,55 @@
+"""Orders and opening stock: the rows of ``orders.csv`` and ``stock.csv``."""
+
+from __future__ import annotations
+
+from datetime import date, timedelta
+from typing import Annotated, Literal
+
+from pydantic import Field, model_validator
+
+from models.calendar import Week
+from models.farm.crew import WEEKDAYS, Weekday
+from models.farm.units import FarmModel, NotNegative, Positive
+
+StockStage = Literal["cooled", "colonising", "ready", "cold-held", "fruiting"]
+
+
+class Order(FarmModel):
+    """A standing or dated order: so many kilograms on one weekday of each week from first to last."""
+
+    customer: Annotated[str, Field(min_length=1, max_length=60)]
+    strain: str
+    weekday: Weekday
+    kg: Positive
+    price_per_kg: NotNegative
+    first_week: Week | None = None
+    last_week: Week | None = None
+    priority: Annotated[int, Field(ge=1, le=9)] = 1
+
+    @model_validator(mode="after")
+    def _first_before_last(self) -> Order:
+        if self.first_week and self.last_week and self.last_week < self.first_week:
+            raise ValueError(
+                f"last_week not before first_week was expected; found {self.first_week} to {self.last_week}"
+            )
+        return self
+
+    def day_in(self, week: Week) -> date | None:
+        """Delivery date in an ISO week; None when the order does not run in that week."""
+        if (self.first_week and week < self.first_week) or (self.last_week and week > self.last_week):
+            return None
+        return week.monday + timedelta(days=WEEKDAYS.index(self.weekday))
+
+
+class StockLot(FarmModel):
+    """Bags of one lot that stand in the rooms on the first day of the plan."""
+
+    lot: Annotated[str, Field(pattern=r"^[A-Za-z0-9-]{1,20}$")]
+    strain: str
+    stage: StockStage
+    bags: Annotated[int, Field(ge=1, le=1_000_000)]
+    since: date = Field(description="cooled, inoculated, ready, put into the cold, or opened on this day")
+    room: str | None = None
+    flushes_picked: Annotated[int, Field(ge=0, le=8)] | None = Field(
+        default=None, description="fruiting lots only; none: counted from the dates"
+    )

@@ -1,0 +1,47 @@
+"""The site: where the farm stands and what it may draw."""
+
+from __future__ import annotations
+
+from typing import Annotated
+from zoneinfo import ZoneInfo, ZoneInfoNotFoundError
+
+from pydantic import Field, field_validator
+
+from models.farm.units import FarmModel, NotNegative, Positive, Temperature
+
+
+class Site(FarmModel):
+    """Place, time zone, money, water, weather and electrical supply."""
+
+    name: Annotated[str, Field(min_length=1, max_length=80)]
+    timezone: str = Field(description="IANA time zone, such as Europe/Dublin")
+    currency: Annotated[str, Field(pattern=r"^[A-Z]{3}$", description="ISO 4217 code")] = "EUR"
+    altitude_m: Annotated[float, Field(ge=-400, le=5000, allow_inf_nan=False)] = 0.0
+    supply_kw: Positive | None = Field(default=None, description="limit on everything drawing at once; none: no limit")
+    base_load_kw: NotNegative = 0.0
+    feed_water_c: Annotated[float, Field(ge=0, le=95, allow_inf_nan=False)] = 12.0
+    ambient_c: Temperature | tuple[Temperature, ...] = Field(
+        default=15.0, description="one value, or twelve: one a month"
+    )
+
+    @field_validator("timezone")
+    @classmethod
+    def _known_zone(cls, value: str) -> str:
+        try:
+            ZoneInfo(value)
+        except (ZoneInfoNotFoundError, ValueError, OSError) as error:
+            raise ValueError(
+                f"an IANA time zone such as Europe/Dublin was expected; found {value!r}"
+            ) from error
+        return value
+
+    @field_validator("ambient_c")
+    @classmethod
+    def _one_or_twelve(cls, value: float | tuple[float, ...]) -> float | tuple[float, ...]:
+        if isinstance(value, tuple) and len(value) != 12:
+            raise ValueError(f"one value or twelve (one a month) were expected; found {len(value)}")
+        return value
+
+    def ambient_in(self, month: int) -> float:
+        """Ambient temperature [°C] of a calendar month (1-12)."""
+        return self.ambient_c[month - 1] if isinstance(self.ambient_c, tuple) else self.ambient_c

@@ -1,0 +1,74 @@
+"""Strains: what grows, how fast, how much and for how long it keeps."""
+
+from __future__ import annotations
+
+from typing import Annotated
+
+from pydantic import Field, field_validator, model_validator
+
+from models.farm.units import Code, FarmModel, NotNegative, Percent, Positive, Temperature
+
+Days = Annotated[int, Field(ge=0, le=400)]
+
+
+class Strain(FarmModel):
+    """A strain with the recipe, bag and steam programme it is grown on."""
+
+    code: Annotated[str, Field(pattern=r"^[A-Za-z0-9]{1,6}$", description="1-6 letters or digits")]
+    name: str = ""
+    recipe: Code
+    bag: Code
+    programme: Code
+    spawn_rate_pct: Annotated[float, Field(gt=0, le=50, allow_inf_nan=False, description="of wet substrate")]
+    spawn_cost_per_kg: NotNegative = 0.0
+    t_min_c: Temperature
+    t_opt_c: Temperature
+    t_max_c: Temperature
+    colonise_days: Annotated[float, Field(gt=0, le=400, allow_inf_nan=False)]
+    colonise_at_c: Temperature
+    colonise_at_spawn_pct: Annotated[float, Field(gt=0, le=50, allow_inf_nan=False)]
+    mature_days: Days = 0
+    ready_wait_days: Days = 3
+    cold_hold_days: Days = 0
+    pin_days: Annotated[int, Field(ge=1, le=200)]
+    rest_days: Annotated[int, Field(ge=1, le=200)] = 12
+    flush_share: Annotated[tuple[Positive, ...], Field(min_length=1, max_length=8)]
+    be_pct: Annotated[float, Field(gt=0, le=400, allow_inf_nan=False)]
+    loss_pct: Annotated[float, Field(ge=0, lt=100, allow_inf_nan=False)] = 0.0
+    fruiting_temp_c: tuple[Temperature, Temperature]
+    shelf_life_days: Annotated[int, Field(ge=0, le=90)]
+    heat_w_per_kg: NotNegative = 0.25
+    yield_cv: NotNegative = 0.20
+    days_cv: NotNegative = 0.10
+
+    @field_validator("flush_share")
+    @classmethod
+    def _shares_sum_to_one(cls, value: tuple[float, ...]) -> tuple[float, ...]:
+        if abs(sum(value) - 1.0) > 1e-6:
+            raise ValueError(f"shares that sum to 1 were expected; found {list(value)}, which sum to {sum(value):g}")
+        return value
+
+    @field_validator("fruiting_temp_c")
+    @classmethod
+    def _low_high(cls, value: tuple[float, float]) -> tuple[float, float]:
+        if value[0] > value[1]:
+            raise ValueError(f"[lowest, highest] was expected; found {list(value)}")
+        return value
+
+    @model_validator(mode="after")
+    def _cardinal_temperatures(self) -> Strain:
+        low, best, high = self.t_min_c, self.t_opt_c, self.t_max_c
+        if not low < best < high:
+            raise ValueError(f"t_min_c < t_opt_c < t_max_c was expected; found {low:g}, {best:g}, {high:g}")
+        middle = (low + high) / 2
+        if best <= middle:
+            raise ValueError(
+                f"t_opt_c above the middle of t_min_c and t_max_c ({middle:g}) was expected,"
+                f" else the growth curve has a pole; found {best:g}"
+            )
+        if not low < self.colonise_at_c < high:
+            raise ValueError(
+                f"colonise_at_c between t_min_c ({low:g}) and t_max_c ({high:g}) was expected;"
+                f" found {self.colonise_at_c:g}"
+            )
+        return self

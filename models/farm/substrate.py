@@ -1,0 +1,64 @@
+"""What is steamed: recipes, bags and steam programmes."""
+
+from __future__ import annotations
+
+from math import pi
+from typing import Annotated, Literal
+
+from pydantic import Field, model_validator
+
+from models.farm.units import Code, FarmModel, NotNegative, Positive
+
+
+class Recipe(FarmModel):
+    """A substrate mix as it goes into the bag."""
+
+    code: Code
+    water_pct: Annotated[float, Field(gt=0, lt=100, allow_inf_nan=False, description="wet basis")]
+    dry_cp_kj_kg_k: Annotated[float, Field(gt=0, le=5, allow_inf_nan=False)] = 1.45
+    density_kg_m3: Annotated[float, Field(ge=50, le=2000, allow_inf_nan=False)] = 560.0
+    conductivity_w_m_k: Annotated[float, Field(gt=0, le=5, allow_inf_nan=False)] = 0.45
+    cost_per_kg: NotNegative = 0.0
+
+
+class Bag(FarmModel):
+    """A filled bag: its wet mass and its shape (full lengths)."""
+
+    code: Code
+    wet_kg: Annotated[float, Field(gt=0, le=100, allow_inf_nan=False)]
+    shape: Literal["cylinder", "brick"]
+    diameter_mm: Positive | None = None
+    height_mm: Positive
+    length_mm: Positive | None = None
+    width_mm: Positive | None = None
+    cost: NotNegative = 0.0
+
+    @model_validator(mode="after")
+    def _sides_of_shape(self) -> Bag:
+        if self.shape == "cylinder":
+            if self.diameter_mm is None:
+                raise ValueError("a cylinder needs diameter_mm and height_mm; diameter_mm is missing")
+            if self.length_mm is not None or self.width_mm is not None:
+                raise ValueError("a cylinder has diameter_mm and height_mm; length_mm and width_mm belong to a brick")
+        else:
+            if self.length_mm is None or self.width_mm is None:
+                raise ValueError("a brick needs length_mm, width_mm and height_mm; one of them is missing")
+            if self.diameter_mm is not None:
+                raise ValueError("a brick has length_mm, width_mm and height_mm; diameter_mm belongs to a cylinder")
+        return self
+
+    @property
+    def volume_m3(self) -> float:
+        """Volume of the filled bag [m³]."""
+        if self.diameter_mm is not None:
+            return pi / 4 * self.diameter_mm**2 * self.height_mm * 1e-9
+        assert self.length_mm is not None and self.width_mm is not None  # noqa: S101  (held by the validator)
+        return self.length_mm * self.width_mm * self.height_mm * 1e-9
+
+
+class Programme(FarmModel):
+    """A steam programme: how hot the coldest core must get, and for how long."""
+
+    code: Code
+    target_core_c: Annotated[float, Field(ge=40, le=140, allow_inf_nan=False)]
+    hold_h: Annotated[float, Field(ge=0, le=96, allow_inf_nan=False)]
