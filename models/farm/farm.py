@@ -49,29 +49,29 @@ class Farm(FarmModel):
     market: Market = Market()
 
     def recipe_of(self, strain: Strain) -> Recipe:
-        """The recipe a strain grows on."""
+        """Return the recipe a strain grows on."""
         return _find(self.recipe, strain.recipe)
 
     def bag_of(self, strain: Strain) -> Bag:
-        """The bag a strain grows in."""
+        """Return the bag a strain grows in."""
         return _find(self.bag, strain.bag)
 
     def programme_of(self, strain: Strain) -> Programme:
-        """The steam programme a strain's bags get."""
+        """Return the steam programme a strain's bags get."""
         return _find(self.programme, strain.programme)
 
     def strain_called(self, code: str) -> Strain:
-        """The strain with this code; KeyError when there is none."""
+        """Return the strain with this code; KeyError when there is none."""
         return _find(self.strain, code)
 
     def steriliser_called(self, code: str) -> Steriliser:
-        """The steriliser with this code; KeyError when there is none."""
+        """Return the steriliser with this code; KeyError when there is none."""
         return _find(self.steriliser, code)
 
     def room_called(self, code: str) -> Room:
-        """The room with this code; KeyError when there is none."""
+        """Return the room with this code; KeyError when there is none."""
         return _find(self.room, code)
 
     def rooms_of(self, kind: RoomKind) -> tuple[Room, ...]:
-        """All rooms of one kind, in file order."""
+        """Return all rooms of one kind, in file order."""
         return tuple(room for room in self.room if room.kind == kind)

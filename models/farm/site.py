@@ -30,9 +30,7 @@ class Site(FarmModel):
         try:
             ZoneInfo(value)
         except (ZoneInfoNotFoundError, ValueError, OSError) as error:
-            raise ValueError(
-                f"an IANA time zone such as Europe/Dublin was expected; found {value!r}"
-            ) from error
+            raise ValueError(f"an IANA time zone such as Europe/Dublin was expected; found {value!r}") from error
         return value
 
     @field_validator("ambient_c")

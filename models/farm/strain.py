@@ -6,7 +6,7 @@ from typing import Annotated
 
 from pydantic import Field, field_validator, model_validator
 
-from models.farm.units import Code, FarmModel, NotNegative, Percent, Positive, Temperature
+from models.farm.units import Code, FarmModel, NotNegative, Positive, Temperature
 
 Days = Annotated[int, Field(ge=0, le=400)]
 
@@ -63,8 +63,8 @@ class Strain(FarmModel):
         middle = (low + high) / 2
         if best <= middle:
             raise ValueError(
-                f"t_opt_c above the middle of t_min_c and t_max_c ({middle:g}) was expected,"
-                f" else the growth curve has a pole; found {best:g}"
+                f"t_opt_c above the middle of t_min_c and t_max_c ({middle:g}), where the growth curve has no pole,"
+                f" was expected; found {best:g}"
             )
         if not low < self.colonise_at_c < high:
             raise ValueError(

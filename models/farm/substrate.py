@@ -37,14 +37,15 @@ class Bag(FarmModel):
     def _sides_of_shape(self) -> Bag:
         if self.shape == "cylinder":
             if self.diameter_mm is None:
-                raise ValueError("a cylinder needs diameter_mm and height_mm; diameter_mm is missing")
+                raise ValueError("diameter_mm for a cylinder was expected; found none")
             if self.length_mm is not None or self.width_mm is not None:
-                raise ValueError("a cylinder has diameter_mm and height_mm; length_mm and width_mm belong to a brick")
+                raise ValueError("only diameter_mm and height_mm for a cylinder were expected; found sides of a brick")
         else:
             if self.length_mm is None or self.width_mm is None:
-                raise ValueError("a brick needs length_mm, width_mm and height_mm; one of them is missing")
+                missing = "length_mm" if self.length_mm is None else "width_mm"
+                raise ValueError(f"length_mm, width_mm and height_mm for a brick were expected; found no {missing}")
             if self.diameter_mm is not None:
-                raise ValueError("a brick has length_mm, width_mm and height_mm; diameter_mm belongs to a cylinder")
+                raise ValueError("only length_mm, width_mm and height_mm for a brick were expected; found diameter_mm")
         return self
 
     @property
@@ -52,7 +53,8 @@ class Bag(FarmModel):
         """Volume of the filled bag [m³]."""
         if self.diameter_mm is not None:
             return pi / 4 * self.diameter_mm**2 * self.height_mm * 1e-9
-        assert self.length_mm is not None and self.width_mm is not None  # noqa: S101  (held by the validator)
+        if self.length_mm is None or self.width_mm is None:
+            raise ValueError(f"bag {self.code} has neither a diameter nor two sides")
         return self.length_mm * self.width_mm * self.height_mm * 1e-9
 
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Annotated
 
-from pydantic import Field
+from pydantic import Field, model_validator
 
 from models.farm.units import Clock, FarmModel, NotNegative, Positive, Temperature
 
@@ -26,6 +26,12 @@ class TariffPeriod(FarmModel):
     start: Clock = Field(alias="from")
     to: Clock
     price: NotNegative
+
+    @model_validator(mode="after")
+    def _has_length(self) -> TariffPeriod:
+        if self.start == self.to:
+            raise ValueError(f"two different clock times were expected; found {self.start} to {self.to}")
+        return self
 
 
 class Tariff(FarmModel):

@@ -74,7 +74,7 @@ def span_minutes(text: str) -> tuple[int, int]:
         raise ValueError(f'a span of clock times such as "07:30-16:00" was expected; found {text!r}')
     start, end = clock_minutes(start_text.strip()), clock_minutes(end_text.strip())
     if end <= start:
-        raise ValueError(f"a span must end after it starts, on the same day; found {text!r}")
+        raise ValueError(f"a span that ends after it starts, on the same day, was expected; found {text!r}")
     return start, end
 
 
