@@ -85,11 +85,16 @@ class BagweekError(Exception):
 
 
 class InputError(BagweekError):
-    """A farm folder that cannot be used; the text is the findings, one sentence a line."""
+    """A farm folder that cannot be used; the text is its first errors, one sentence a line."""
+
+    SHOWN: ClassVar[int] = 20
 
     def __init__(self, findings: tuple[Finding, ...]) -> None:
         self.findings = findings
-        super().__init__("\n".join(finding.sentence() for finding in findings))
+        lines = [finding.sentence() for finding in findings if finding.severity == "error"]
+        if len(lines) > self.SHOWN:
+            lines[self.SHOWN :] = [f"... and {len(lines) - self.SHOWN} more; bagweek check lists them all."]
+        super().__init__("\n".join(lines))
 
 
 class UsageError(BagweekError):
