@@ -1,0 +1,99 @@
+"""Whole bags: fix runs, fillings and inoculations one stage after the other, then give the losses whole numbers."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+import numpy as np
+
+from scheduler.planning.dive import Candidate, Style, dive
+from scheduler.planning.engine import Answer, FloatArray, Relaxation
+from scheduler.planning.lots import Made, make_lots
+from scheduler.planning.matrix import Matrix
+from scheduler.planning.stock_and_flow import StockAndFlow
+
+BAG_STYLE = Style(window_days=7, sparse=False)
+FREE = float("inf")
+
+
+def run_candidates(flow: StockAndFlow) -> list[Candidate]:
+    """Run columns: one lane for each kind of steriliser."""
+    arcs = flow.problem.arcs
+    return [Candidate(column, arcs[k].steriliser, arcs[k].load_day) for k, column in enumerate(flow.columns.run)]
+
+
+def fill_candidates(flow: StockAndFlow) -> list[Candidate]:
+    """Filled bags: one lane for each strain."""
+    return [
+        Candidate(column, strain, flow.groups[group].load_day) for (strain, group), column in flow.columns.fill.items()
+    ]
+
+
+def inoculation_candidates(flow: StockAndFlow) -> list[Candidate]:
+    """Inoculated bags: one lane for each strain."""
+    return [Candidate(column, strain, day) for (strain, _, day), column in flow.columns.inoculate.items()]
+
+
+def opening_candidates(flow: StockAndFlow) -> list[Candidate]:
+    """Opened, cold-held and kept bags: one lane for each strain."""
+    found = [Candidate(column, strain, day) for (strain, _, day, _), column in flow.columns.open.items()]
+    found += [Candidate(column, strain, day) for (strain, _, day), column in flow.columns.hold.items()]
+    stock = flow.problem.stock.fruiting
+    found += [Candidate(column, stock[lot].strain, 0) for (lot, _), column in flow.columns.keep.items()]
+    return found
+
+
+def allow_discards(flow: StockAndFlow, relaxation: Relaxation, high: FloatArray) -> None:
+    """Let single bags be dropped, so that rounding always has a way out."""
+    for table in (flow.columns.drop_cooled, flow.columns.drop_ready):
+        for column in table.values():
+            high[column] = FREE
+            relaxation.bound(column, 0.0, FREE)
+
+
+def whole_losses(flow: StockAndFlow, made: Made, relaxation: Relaxation) -> None:
+    """Replace expected losses by whole ones: shift the bounds of the rows in which they stand.
+
+    The inoculations are fixed, so each row of ready bags has a known fractional inflow; the difference to the whole
+    inflow moves to the row's bounds, as does that of the places the lost bags leave.
+    """
+    shift: dict[int, float] = {}
+    for batch in made.batches:
+        surplus = batch.bags * batch.loss_pct / 100 - batch.lost
+        if batch.loss_pct and surplus and 0 <= batch.ready < flow.problem.days:
+            for row in flow.loss_rows(batch.strain, batch.pool, batch.ready, batch.deadline):
+                shift[row] = shift.get(row, 0.0) + surplus
+    for row, amount in shift.items():
+        low, high = flow.matrix.row_low[row] + amount, flow.matrix.row_high[row] + amount
+        relaxation.bound_row(row, low, high)
+
+
+def whole_bags(
+    flow: StockAndFlow,
+    relaxation: Relaxation,
+    answer: Answer,
+    low: FloatArray,
+    high: FloatArray,
+    tell: Callable[[float], None],
+) -> tuple[Answer, Made]:
+    """Make every bag whole, runs being fixed.
+
+    Returns
+    -------
+    Answer, Made
+        The last relaxation, with whole run, fill, inoculation, cold and opening columns, and the lots in it.
+    """
+    allow_discards(flow, relaxation, high)
+    for candidates in (fill_candidates(flow), inoculation_candidates(flow)):
+        answer = dive(relaxation, answer, candidates, BAG_STYLE, low, high, tell)
+    assert answer.values is not None  # noqa: S101
+    made = make_lots(flow, answer.values)
+    whole_losses(flow, made, relaxation)
+    answer = relaxation.solve()
+    answer = dive(relaxation, answer, opening_candidates(flow), BAG_STYLE, low, high, tell)
+    return answer, made
+
+
+def bounds_of(matrix: Matrix) -> tuple[FloatArray, FloatArray]:
+    """Fresh column bounds of a matrix."""
+    return np.array(matrix.column_low), np.array(matrix.column_high)
