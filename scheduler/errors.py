@@ -63,7 +63,9 @@ class Finding:
         text = f"{self.place}: expected {self.expected}"
         if self.found:
             text += f", found {self.found}"
-        return text + (f"; did you mean '{self.nearest}'?" if self.nearest else ".")
+        if self.nearest:
+            return f"{text}; did you mean '{self.nearest}'?"
+        return text if text.endswith(".") else f"{text}."
 
     def as_json(self) -> dict[str, str]:
         """Return the finding as it stands in a JSON document."""

@@ -59,7 +59,7 @@ def nearest_choice(word: str, choices: Iterable[str]) -> str:
 
 def choices_in_words(what: str, choices: Iterable[str]) -> str:
     """Say what was expected, with the choices when they are few: ``a recipe of this file (oak62, beech)``."""
-    names = list(choices)
+    names = list(dict.fromkeys(choices))
     return f"{what} ({', '.join(names)})" if 0 < len(names) <= 12 else what
 
 

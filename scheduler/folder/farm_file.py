@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import json
-import re
 import tomllib
 from collections.abc import Mapping
 from dataclasses import dataclass, field
@@ -19,9 +18,9 @@ from models.farm.references import CODED_SECTIONS, duplicate_codes, unknown_refe
 from scheduler.errors import Finding
 from scheduler.folder.farm_findings import FILE, of_mismatch, of_validation
 from scheduler.folder.text_file import MEGABYTE, read_text
+from scheduler.folder.toml_faults import toml_fault
 
 LIMIT = 1 * MEGABYTE
-_PLACE = re.compile(r"^(?P<what>.*?) \(at (?:line (?P<line>\d+), column (?P<column>\d+)|end of document)\)$", re.DOTALL)
 
 
 @dataclass(frozen=True, slots=True)
@@ -34,7 +33,7 @@ class FarmFile:
 
 def read_farm_file(path: Path, findings: list[Finding]) -> FarmFile:
     """Read and check ``farm.toml``; findings are added to the list."""
-    text = read_text(path, LIMIT, "a farm file; `bagweek new DIR` makes one to start from", findings)
+    text = read_text(path, LIMIT, "a farm file (`bagweek new DIR` makes one)", findings)
     table = None if text is None else _table(text, findings)
     if table is None:
         return FarmFile()
@@ -54,7 +53,8 @@ def read_farm_file(path: Path, findings: list[Finding]) -> FarmFile:
     if not unresolved:
         mine += [of_mismatch(one) for one in plausibility(farm)]
     findings += mine
-    return FarmFile(farm, codes)
+    sound = all(finding.severity == "warning" for finding in mine)
+    return FarmFile(farm if sound else None, codes)
 
 
 def farm_from_table(table: Mapping[str, Any]) -> Farm:
@@ -85,26 +85,12 @@ def _table(text: str, findings: list[Finding]) -> dict[str, Any] | None:
     try:
         return tomllib.loads(text)
     except tomllib.TOMLDecodeError as error:
-        findings.append(_syntax(text, str(error)))
+        findings.append(toml_fault(FILE, text, str(error)))
     except RecursionError:
         findings.append(Finding(FILE, "", "brackets nested too deep", "tables and lists as a farm file has them"))
     except ValueError:
         findings.append(Finding(FILE, "", "a number of thousands of digits", "numbers of ordinary size"))
     return None
-
-
-def _syntax(text: str, message: str) -> Finding:
-    match = _PLACE.match(message)
-    what = match["what"] if match else message
-    if not match or match["line"] is None:
-        return Finding(FILE, "at its end", f"a fault ({what.lower()})", "TOML")
-    lines = text.replace("\r\n", "\n").split("\n")
-    number = int(match["line"])
-    line = " ".join(lines[number - 1].split()) if number <= len(lines) else ""
-    line = line if len(line) <= 60 else line[:57] + "..."
-    readable = "".join(letter if letter.isprintable() else "?" for letter in line)
-    found = f"a fault ({what[:1].lower()}{what[1:]}) in: {readable}"
-    return Finding(FILE, f"line {number}, column {match['column']}", found, "TOML, one `key = value` a line")
 
 
 def _tables(table: Mapping[str, Any], section: str) -> list[dict[str, Any]]:

@@ -32,11 +32,17 @@ def of_validation(error: ValidationError, table: Mapping[str, Any]) -> list[Find
     found: dict[str, Finding] = {}
     for detail in error.errors(include_url=False):
         loc = _in_file(detail["loc"], table)
-        if detail["type"] == "missing" and loc in meant:
+        if (detail["type"] == "missing" and loc in meant) or _all_faulty(detail, table):
             continue
         finding = _finding(detail, loc, table)
         found.setdefault(finding.key, finding)
     return list(found.values())
+
+
+def _all_faulty(detail: Any, table: Mapping[str, Any]) -> bool:
+    """Tell a list that is short only because its items are faulty, which is said of each item."""
+    loc = detail["loc"]
+    return detail["type"] == "too_short" and len(loc) == 1 and bool(table.get(loc[0]))
 
 
 def known_keys(loc: Sequence[str | int]) -> list[str]:
@@ -112,17 +118,31 @@ def _finding(detail: Any, loc: tuple[str | int, ...], table: Mapping[str, Any]) 
         expected = f"a key that {where} has" + ("" if near or len(known) > 12 else f" ({', '.join(known)})")
         return Finding(FILE, key, f"the unknown key '{name}'", expected, near)
     if kind == "missing":
-        expected = f"at least one [[{name}]] table" if listed else "this key"
-        return Finding(FILE, key, "that it is missing", expected)
+        return _missing(key, loc, value, listed=listed)
     if loc[:2] in _SPECIAL and kind != "value_error":
         return Finding(FILE, key, shown(value), _SPECIAL[loc[:2]])
     if kind in {"model_type", "model_attributes_type", "dataclass_type"} or (listed and kind == "tuple_type"):
         section = str(loc[0])
         form = f"tables written [[{section}]]" if listed or len(loc) > 1 else f"a table written [{section}]"
-        return Finding(FILE, key, f"[{name}] in single brackets" if isinstance(value, dict) else shown(value), form)
+        return Finding(FILE, key, _brackets(name, value), form)
     if listed and kind == "too_short":
         return Finding(FILE, key, "none", f"at least one [[{name}]] table")
     return _worded(detail, key, value)
+
+
+def _brackets(name: str, value: object) -> str:
+    if isinstance(value, dict):
+        return f"[{name}] in single brackets"
+    return f"[[{name}]] in double brackets" if isinstance(value, list) and value else shown(value)
+
+
+def _missing(key: str, loc: tuple[str | int, ...], value: object, *, listed: bool) -> Finding:
+    if listed:
+        return Finding(FILE, key, "none", f"at least one [[{loc[0]}]] table")
+    if isinstance(value, list):
+        return Finding(FILE, key, f"only {shown(value)}", "one value more")
+    expected = f"a table written [{loc[0]}]" if len(loc) == 1 else "a value for this key"
+    return Finding(FILE, key, "it missing", expected)
 
 
 def _worded(detail: Any, key: str, value: object) -> Finding:

@@ -91,10 +91,10 @@ def _from_message(message: str, value: object) -> tuple[str, str]:
 
 def _limit(kind: str, context: dict[str, Any]) -> str:
     words = {
-        "greater_than": "a number above {gt:g}",
-        "greater_than_equal": "a number of at least {ge:g}",
-        "less_than": "a number below {lt:g}",
-        "less_than_equal": "a number of at most {le:g}",
+        "greater_than": "a number above {gt}",
+        "greater_than_equal": "a number of at least {ge}",
+        "less_than": "a number below {lt}",
+        "less_than_equal": "a number of at most {le}",
         "string_too_short": "text of at least {min_length} character",
         "string_too_long": "text of at most {max_length} characters",
         "too_short": "a list of at least {min_length}",
@@ -103,4 +103,7 @@ def _limit(kind: str, context: dict[str, Any]) -> str:
     }
     if kind == "string_pattern_mismatch":
         return _PATTERNS.get(context["pattern"], "text of another form")
-    return words[kind].format(**context).replace("'", "") if kind in words else "a value of another kind"
+    if kind not in words:
+        return "a value of another kind"
+    plain = {key: f"{item:.15g}" if isinstance(item, int | float) else item for key, item in context.items()}
+    return words[kind].format(**plain).replace("'", "")

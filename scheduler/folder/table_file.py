@@ -107,6 +107,10 @@ def _places(name: str, row: int, header: list[str], columns: Columns, findings: 
     titles = [_column(title) for title in header]
     missing = [column for column in columns.required if column not in titles]
     extra = [title for title in titles if title and title not in columns.names]
+    if not set(titles) & set(columns.names):
+        expected = f"a first row with the columns {', '.join(columns.names)}"
+        findings.append(Finding(name, f"row {row}", shown(header), expected))
+        return None
     for column in missing:
         near = nearest_choice(column, extra)
         found = f"'{near}'" if near else f"only {shown(header)}"
