@@ -19,11 +19,17 @@ class Crew(FarmModel):
     """People with the same shifts and skills."""
 
     code: Code
+    """Short code."""
     people: Annotated[int, Field(ge=1, le=500)]
+    """How many people it has."""
     skills: Annotated[tuple[Skill, ...], Field(min_length=1)]
+    """What it can do: mix, steam, inoculate, open, pick."""
     cost_per_h: NotNegative = 0.0
+    """Cost of one person's hour [currency/h]."""
     shift: Annotated[dict[Weekday, Span], Field(min_length=1)]
+    """Working time by weekday, mon to sun, such as 07:30-16:00; days left out are off."""
     closed: ClosedDays = ()
+    """Dates on which it does not work."""
 
     @field_validator("skills")
     @classmethod
@@ -42,9 +48,16 @@ class Rates(FarmModel):
     """How fast one person works."""
 
     mix_bags_h: Positive = 30.0
+    """Mixing and filling [bags/h]."""
     load_bags_h: Positive = 250.0
+    """Loading a steriliser [bags/h]."""
     unload_bags_h: Positive = 230.0
+    """Unloading a steriliser [bags/h]."""
     inoculate_bags_h: Positive = 40.0
+    """Inoculating [bags/h]."""
     open_bags_h: Positive = 120.0
+    """Moving to fruiting and cutting [bags/h]."""
     pick_kg_h: Positive = 12.0
+    """Picking [kg/h]."""
     discard_bags_h: Positive = 150.0
+    """Taking spent bags away [bags/h]."""

@@ -36,17 +36,29 @@ class Farm(FarmModel):
     """Everything in ``farm.toml``. References between parts are checked by `models.farm.references`."""
 
     site: Site
+    """Where the farm stands and what it may draw."""
     recipe: Annotated[tuple[Recipe, ...], Field(min_length=1)]
+    """Substrate mixes."""
     bag: Annotated[tuple[Bag, ...], Field(min_length=1)]
+    """Bags."""
     programme: Annotated[tuple[Programme, ...], Field(min_length=1)]
+    """Steam programmes."""
     steriliser: Annotated[tuple[Steriliser, ...], Field(min_length=1)]
+    """Sterilisers."""
     room: Annotated[tuple[Room, ...], Field(min_length=1)]
+    """Rooms."""
     strain: Annotated[tuple[Strain, ...], Field(min_length=1)]
+    """Strains."""
     crew: Annotated[tuple[Crew, ...], Field(min_length=1)]
+    """Crews."""
     rates: Rates = Rates()
+    """How fast one person works."""
     limits: Limits = Limits()
+    """How long things may wait and how many fit at the bench."""
     tariff: Tariff = Tariff()
+    """Price of electricity by local time of day."""
     market: Market = Market()
+    """What is lost when an order is short, and where surplus can go."""
 
     def recipe_of(self, strain: Strain) -> Recipe:
         """Return the recipe a strain grows on."""

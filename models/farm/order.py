@@ -18,13 +18,21 @@ class Order(FarmModel):
     """A standing or dated order: so many kilograms on one weekday of each week from first to last."""
 
     customer: Annotated[str, Field(min_length=1, max_length=60)]
+    """Who gets it."""
     strain: str
+    """Code of the strain."""
     weekday: Weekday
+    """Day of delivery: mon to sun, or the whole name."""
     kg: Positive
+    """How much, each week [kg]."""
     price_per_kg: NotNegative
+    """Price [currency/kg]."""
     first_week: Week | None = None
+    """First ISO week; blank: from the start."""
     last_week: Week | None = None
+    """Last ISO week; blank: without end."""
     priority: Annotated[int, Field(ge=1, le=9)] = 1
+    """1 is the first to be filled; a shortage costs shortage_per_kg over this."""
 
     @model_validator(mode="after")
     def _first_before_last(self) -> Order:
@@ -45,11 +53,16 @@ class StockLot(FarmModel):
     """Bags of one lot that stand in the rooms on the first day of the plan."""
 
     lot: Annotated[str, Field(pattern=r"^[A-Za-z0-9-]{1,20}$")]
+    """Lot code."""
     strain: str
+    """Code of the strain."""
     stage: StockStage
+    """cooled, colonising, ready, cold-held or fruiting."""
     bags: Annotated[int, Field(ge=1, le=1_000_000)]
-    since: date = Field(description="cooled, inoculated, ready, put into the cold, or opened on this day")
+    """Bags that stand there [bags]."""
+    since: date
+    """Day they were cooled, inoculated, ready, put into the cold, or opened."""
     room: str | None = None
-    flushes_picked: Annotated[int, Field(ge=0, le=8)] | None = Field(
-        default=None, description="fruiting lots only; none: counted from the dates"
-    )
+    """Code of the room; blank: the first that suits."""
+    flushes_picked: Annotated[int, Field(ge=0, le=8)] | None = None
+    """Flushes that are over; fruiting lots only; blank: counted from the dates."""

@@ -14,15 +14,21 @@ class Site(FarmModel):
     """Place, time zone, money, water, weather and electrical supply."""
 
     name: Annotated[str, Field(min_length=1, max_length=80)]
-    timezone: str = Field(description="IANA time zone, such as Europe/Dublin")
-    currency: Annotated[str, Field(pattern=r"^[A-Z]{3}$", description="ISO 4217 code")] = "EUR"
+    """Name of the farm, as it stands on sheets."""
+    timezone: str
+    """IANA time zone of all clock times, such as Europe/Dublin."""
+    currency: Annotated[str, Field(pattern=r"^[A-Z]{3}$")] = "EUR"
+    """ISO 4217 code of all prices."""
     altitude_m: Annotated[float, Field(ge=-400, le=5000, allow_inf_nan=False)] = 0.0
-    supply_kw: Positive | None = Field(default=None, description="limit on everything drawing at once; none: no limit")
+    """Height above the sea [m]; lowers the boiling point."""
+    supply_kw: Positive | None = None
+    """Limit on everything that draws at once [kW]; left out: no limit."""
     base_load_kw: NotNegative = 0.0
+    """What fans, lights and cold room draw all the time [kW]."""
     feed_water_c: Annotated[float, Field(ge=0, le=95, allow_inf_nan=False)] = 12.0
-    ambient_c: Temperature | tuple[Temperature, ...] = Field(
-        default=15.0, description="one value, or twelve: one a month"
-    )
+    """Temperature of the water the generators are filled with [°C]."""
+    ambient_c: Temperature | tuple[Temperature, ...] = 15.0
+    """Temperature round the sterilisers [°C]: one value, or twelve, one a month."""
 
     @field_validator("timezone")
     @classmethod

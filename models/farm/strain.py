@@ -14,32 +14,58 @@ Days = Annotated[int, Field(ge=0, le=400)]
 class Strain(FarmModel):
     """A strain with the recipe, bag and steam programme it is grown on."""
 
-    code: Annotated[str, Field(pattern=r"^[A-Za-z0-9]{1,6}$", description="1-6 letters or digits")]
+    code: Annotated[str, Field(pattern=r"^[A-Za-z0-9]{1,6}$")]
+    """Code of 1-6 letters or digits; part of every lot code."""
     name: str = ""
+    """Name in words."""
     recipe: Code
+    """Code of the recipe it grows on."""
     bag: Code
+    """Code of the bag it grows in."""
     programme: Code
-    spawn_rate_pct: Annotated[float, Field(gt=0, le=50, allow_inf_nan=False, description="of wet substrate")]
+    """Code of the steam programme its bags get."""
+    spawn_rate_pct: Annotated[float, Field(gt=0, le=50, allow_inf_nan=False)]
+    """Spawn used [% of wet substrate]."""
     spawn_cost_per_kg: NotNegative = 0.0
+    """Price of spawn [currency/kg]."""
     t_min_c: Temperature
+    """Temperature at and below which mycelium does not grow [°C]."""
     t_opt_c: Temperature
+    """Temperature of fastest growth [°C]; above the middle of t_min_c and t_max_c."""
     t_max_c: Temperature
+    """Temperature at and above which mycelium does not grow [°C]."""
     colonise_days: Annotated[float, Field(gt=0, le=400, allow_inf_nan=False)]
+    """Days to run through the bag at colonise_at_c and colonise_at_spawn_pct [d]."""
     colonise_at_c: Temperature
+    """Room temperature at which colonise_days holds [°C]."""
     colonise_at_spawn_pct: Annotated[float, Field(gt=0, le=50, allow_inf_nan=False)]
+    """Spawn rate at which colonise_days holds [% of wet substrate]."""
     mature_days: Days = 0
+    """Days after colonisation before a bag may be opened [d], such as browning."""
     ready_wait_days: Days = 3
+    """Most days a ready bag may wait in its room [d]."""
     cold_hold_days: Days = 0
+    """Most days a ready bag may be held in the cold [d]."""
     pin_days: Annotated[int, Field(ge=1, le=200)]
+    """Days from opening to the first flush [d]."""
     rest_days: Annotated[int, Field(ge=1, le=200)] = 12
+    """Days from one flush to the next [d]."""
     flush_share: Annotated[tuple[Positive, ...], Field(min_length=1, max_length=8)]
+    """Share of the yield in each flush; adds up to 1."""
     be_pct: Annotated[float, Field(gt=0, le=400, allow_inf_nan=False)]
+    """Biological efficiency: fresh mushrooms over dry substrate [%]."""
     loss_pct: Annotated[float, Field(ge=0, lt=100, allow_inf_nan=False)] = 0.0
+    """Bags expected to be lost in colonisation [%]."""
     fruiting_temp_c: tuple[Temperature, Temperature]
+    """Lowest and highest temperature of its fruiting room [°C]."""
     shelf_life_days: Annotated[int, Field(ge=0, le=90)]
+    """Days picked mushrooms can be sold for [d]."""
     heat_w_per_kg: NotNegative = 0.25
+    """Heat of a colonising bag at its peak [W/kg wet]."""
     yield_cv: NotNegative = 0.20
+    """Coefficient of variation of a bag's yield, for the forecast [-]."""
     days_cv: NotNegative = 0.10
+    """Coefficient of variation of growing times, for the forecast [-]."""
 
     @field_validator("flush_share")
     @classmethod

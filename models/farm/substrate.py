@@ -14,24 +14,38 @@ class Recipe(FarmModel):
     """A substrate mix as it goes into the bag."""
 
     code: Code
-    water_pct: Annotated[float, Field(gt=0, lt=100, allow_inf_nan=False, description="wet basis")]
+    """Short code; strains name it."""
+    water_pct: Annotated[float, Field(gt=0, lt=100, allow_inf_nan=False)]
+    """Water in the mix as it goes into the bag [% of wet mass]."""
     dry_cp_kj_kg_k: Annotated[float, Field(gt=0, le=5, allow_inf_nan=False)] = 1.45
+    """Heat capacity of the dry matter [kJ/kg K]."""
     density_kg_m3: Annotated[float, Field(ge=50, le=2000, allow_inf_nan=False)] = 560.0
+    """Density of the mix as packed [kg/m³]."""
     conductivity_w_m_k: Annotated[float, Field(gt=0, le=5, allow_inf_nan=False)] = 0.45
+    """Thermal conductivity of the mix as packed [W/m K]."""
     cost_per_kg: NotNegative = 0.0
+    """Cost of the mix [currency/kg wet]."""
 
 
 class Bag(FarmModel):
     """A filled bag: its wet mass and its shape (full lengths)."""
 
     code: Code
+    """Short code; strains name it."""
     wet_kg: Annotated[float, Field(gt=0, le=100, allow_inf_nan=False)]
+    """Wet mass of a filled bag [kg]."""
     shape: Literal["cylinder", "brick"]
+    """cylinder (diameter_mm, height_mm) or brick (length_mm, width_mm, height_mm)."""
     diameter_mm: Positive | None = None
+    """Diameter of a cylinder [mm]; cylinders only."""
     height_mm: Positive
+    """Full height [mm]."""
     length_mm: Positive | None = None
+    """Full length of a brick [mm]; bricks only."""
     width_mm: Positive | None = None
+    """Full width of a brick [mm]; bricks only."""
     cost: NotNegative = 0.0
+    """Cost of an empty bag with filter and closure [currency]."""
 
     @model_validator(mode="after")
     def _sides_of_shape(self) -> Bag:
@@ -62,5 +76,8 @@ class Programme(FarmModel):
     """A steam programme: how hot the coldest core must get, and for how long."""
 
     code: Code
+    """Short code; strains name it."""
     target_core_c: Annotated[float, Field(ge=40, le=140, allow_inf_nan=False)]
+    """Temperature the coldest core must reach [°C]."""
     hold_h: Annotated[float, Field(ge=0, le=96, allow_inf_nan=False)]
+    """How long it is held from the moment the coldest core is there [h]."""

@@ -13,19 +13,24 @@ class Limits(FarmModel):
     """How long things may wait and how many people fit at the bench."""
 
     mix_to_steam_h: Positive = 6.0
+    """Most time from the start of mixing until steam is on [h]; later the mix sours."""
     cooled_to_inoculate_h: Positive = 48.0
+    """Most time from cool to inoculated [h]."""
     inoculate_below_c: Temperature = 28.0
-    inoculation_benches: Annotated[int, Field(ge=1, le=200)] | None = Field(
-        default=None, description="people who can inoculate at once; none: as many as are on shift"
-    )
+    """Core temperature below which a bag may be inoculated [°C]."""
+    inoculation_benches: Annotated[int, Field(ge=1, le=200)] | None = None
+    """People who can inoculate at once; left out: as many as are on shift."""
 
 
 class TariffPeriod(FarmModel):
     """A price per kWh between two local clock times; it may wrap midnight."""
 
     start: Clock = Field(alias="from")
+    """Clock time it starts."""
     to: Clock
+    """Clock time it ends; it may wrap midnight."""
     price: NotNegative
+    """Price then [currency/kWh]."""
 
     @model_validator(mode="after")
     def _has_length(self) -> TariffPeriod:
@@ -38,13 +43,19 @@ class Tariff(FarmModel):
     """Price of electricity by local time of day [currency/kWh]."""
 
     default: NotNegative = 0.30
+    """Price of electricity outside of all periods [currency/kWh]."""
     periods: tuple[TariffPeriod, ...] = ()
+    """Periods with another price; the first that fits counts."""
 
 
 class Market(FarmModel):
     """What is lost when an order is short, and where surplus can go."""
 
     shortage_per_kg: NotNegative = 20.0
+    """What a kilogram short of an order costs beyond its price [currency/kg], over the priority of the order."""
     spot_price_share: NotNegative = 0.5
+    """Price of surplus on the spot market, over the strain's mean order price [0-1]."""
     spot_kg_week: NotNegative = 0.0
-    spoilage_per_kg: NotNegative = Field(default=0.0, description="cost of getting rid of a kilogram nobody takes")
+    """Most that the spot market takes in a week [kg]."""
+    spoilage_per_kg: NotNegative = 0.0
+    """Cost of getting rid of a kilogram nobody takes [currency/kg]."""

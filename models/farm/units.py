@@ -11,20 +11,20 @@ from pydantic import AfterValidator, BaseModel, ConfigDict, Field
 CODE_PATTERN = r"^[A-Za-z0-9][A-Za-z0-9-]{0,11}$"
 """A code is 1-12 letters, digits or dashes, so that a lot code stays within 20 characters."""
 
-Code = Annotated[str, Field(pattern=CODE_PATTERN, description="short code: 1-12 letters, digits or dashes")]
+Code = Annotated[str, Field(pattern=CODE_PATTERN)]
 Positive = Annotated[float, Field(gt=0, allow_inf_nan=False)]
 NotNegative = Annotated[float, Field(ge=0, allow_inf_nan=False)]
 Percent = Annotated[float, Field(ge=0, le=100, allow_inf_nan=False)]
-Temperature = Annotated[float, Field(ge=-60, le=200, allow_inf_nan=False, description="°C")]
+Temperature = Annotated[float, Field(ge=-60, le=200, allow_inf_nan=False)]
 Count = Annotated[int, Field(ge=1, le=1_000_000)]
 
 _CLOCK = re.compile(r"^([01]\d|2[0-3]):([0-5]\d)$|^24:00$")
 
 
 class FarmModel(BaseModel):
-    """Base of every noun of the farm file: frozen, and an unknown key is an error."""
+    """Base of every noun of the farm file: frozen, unknown keys refused, each field described by the text below it."""
 
-    model_config = ConfigDict(extra="forbid", frozen=True, allow_inf_nan=False)
+    model_config = ConfigDict(extra="forbid", frozen=True, allow_inf_nan=False, use_attribute_docstrings=True)
 
 
 def clock_minutes(text: str) -> int:

@@ -1,0 +1,26 @@
+"""The JSON Schema of the farm file, for editors that complete and check it."""
+
+from __future__ import annotations
+
+import json
+from typing import Any
+
+from models.farm import Farm
+
+FILE = "farm.schema.json"
+
+
+def farm_schema() -> dict[str, Any]:
+    """Return the JSON Schema of ``farm.toml``, with a description of every key."""
+    schema = Farm.model_json_schema(mode="validation")
+    head = {
+        "$schema": "https://json-schema.org/draft/2020-12/schema",
+        "title": "bagweek farm file",
+        "description": "Substrate, steam, rooms, strains, people and prices of a farm. Keys end in their unit.",
+    }
+    return {**head, **{key: value for key, value in schema.items() if key not in head}}
+
+
+def farm_schema_text() -> str:
+    """Return the JSON Schema as the text of a file."""
+    return json.dumps(farm_schema(), indent=2, ensure_ascii=False) + "\n"
