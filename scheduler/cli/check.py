@@ -1,0 +1,55 @@
+"""``bagweek check``: is the farm folder sound, and what can each stage do."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import Annotated
+
+import typer
+
+
+def check(
+    farm: Annotated[Path, typer.Option("--farm", metavar="DIR", help="Farm folder.")] = Path(),
+    month: Annotated[
+        int | None,
+        typer.Option("--month", min=1, max=12, help="Month of the sterilisers' cycles [default: 1 and 7]."),
+    ] = None,
+    as_json: Annotated[bool, typer.Option("--json", help="Print one JSON document.")] = False,
+    schema: Annotated[bool, typer.Option("--schema", help="Print the JSON Schema of farm.toml and stop.")] = False,
+) -> None:
+    """Check a farm folder, and show what each stage can do in a week.
+
+    Exit code 0: no findings; 1: warnings only; 2: errors.
+    """
+    import json
+
+    from scheduler.errors import InputError
+    from scheduler.folder import read_farm_folder
+
+    if schema:
+        from scheduler.folder.schema import farm_schema_text
+
+        typer.echo(farm_schema_text(), nl=False)
+        return
+    from scheduler.capacity import MONTHS, capacities
+    from scheduler.views.check import check_document, show_check
+
+    try:
+        folder = read_farm_folder(farm)
+    except InputError as error:
+        if as_json:
+            typer.echo(json.dumps(check_document(None, error.findings, ()), indent=2, ensure_ascii=False))
+        else:
+            for finding in error.findings:
+                prefix = "" if finding.severity == "error" else "warning: "
+                typer.echo(prefix + finding.sentence(), err=True)
+        raise typer.Exit(error.exit_code) from error
+    stages = capacities(folder.farm, (month,) if month else MONTHS)
+    if as_json:
+        document = check_document(folder.farm.site.name, folder.findings, stages)
+        typer.echo(json.dumps(document, indent=2, ensure_ascii=False))
+    else:
+        from rich.console import Console
+
+        show_check(Console(highlight=False, emoji=False, markup=False), folder.farm.site.name, folder.findings, stages)
+    raise typer.Exit(1 if folder.findings else 0)
