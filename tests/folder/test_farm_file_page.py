@@ -25,7 +25,8 @@ from models.farm import (
     Tariff,
     TariffPeriod,
 )
-from scheduler.folder.schema import farm_schema
+from scheduler.folder import read_farm_folder, scenario_folder, scenario_names
+from scheduler.folder.schema import farm_schema, farm_schema_text
 
 PAGE = (Path(__file__).parents[2] / "docs" / "reference" / "farm-file.md").read_text(encoding="utf-8")
 
@@ -97,3 +98,19 @@ def test_the_schema_describes_every_key():
         for key, value in part["properties"].items():
             described = value.get("description") or schema["$defs"][value["$ref"].rsplit("/", 1)[1]]["description"]
             assert described.endswith("."), f"{name}.{key}"
+
+
+def test_the_published_schema_is_the_one_the_code_gives():
+    published = Path(__file__).parents[2] / "docs" / "reference" / "farm.schema.json"
+    assert published.read_text(encoding="utf-8") == farm_schema_text(), (
+        "write it anew: bagweek check --schema > docs/reference/farm.schema.json"
+    )
+
+
+@pytest.mark.parametrize("name", scenario_names())
+def test_scenarios_are_sound_and_name_the_schema(name):
+    folder = scenario_folder(name)
+    first = (folder / "farm.toml").read_text(encoding="utf-8").splitlines()[0]
+    schema = folder / first.removeprefix("#:schema ")
+    assert schema.resolve() == (Path(__file__).parents[2] / "docs" / "reference" / "farm.schema.json").resolve()
+    assert read_farm_folder(folder).orders
