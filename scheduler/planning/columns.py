@@ -28,7 +28,7 @@ class Columns:
     fill: dict[tuple[int, int], int] = field(default_factory=dict)  # strain, group
     inoculate: dict[tuple[int, int, int], int] = field(default_factory=dict)  # strain, pool, day
     hold: dict[tuple[int, int, int], int] = field(default_factory=dict)  # strain, pool, day
-    leave: dict[tuple[int, int, int], int] = field(default_factory=dict)  # strain, source, day
+    leaving: dict[tuple[int, int, int], list[int]] = field(default_factory=dict)  # strain, source, day: opened from it
     open: dict[tuple[int, int, int, int], int] = field(default_factory=dict)  # strain, fruit pool, day, flushes
     keep: dict[tuple[int, int], int] = field(default_factory=dict)  # fruiting stock lot, flushes in all
     drop_cooled: dict[tuple[int, int], int] = field(default_factory=dict)  # strain, day

@@ -180,7 +180,8 @@ class RunNetwork:
         self, index: int, steriliser: Steriliser, kind_index: int, load: float, *, every: bool
     ) -> Iterator[Arc]:
         bags = steriliser.bags_at(load)
-        rows = {month: self._row(steriliser, kind_index, load, month) for month in range(1, 13)}
+        months = {self.shifts.clock.day(day).month for day in range(self.days)}
+        rows = {month: self._row(steriliser, kind_index, load, month) for month in months}
         for day in range(self.days):
             row = rows[self.shifts.clock.day(day).month]
             if row is None:

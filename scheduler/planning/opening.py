@@ -74,12 +74,10 @@ def _add_waiting(flow: StockAndFlow, strain: int, source: int, arrivals: list[Ar
             until[k].append((item.column, -item.bags))
     before: int | None = None
     for step, day in enumerate(open_days):
-        leave = matrix.column()
-        flow.columns.leave[strain, source, day] = leave
         drop = matrix.column(high=flow.discard_limit(day, stocked=bool(stock)))
         flow.columns.drop_ready[strain, source, day] = drop
         state = matrix.column()
-        terms = [(state, 1.0), (leave, 1.0), (drop, 1.0), *coming[step]]
+        terms = [(state, 1.0), (drop, 1.0), *coming[step]]
         if to_cold:
             hold = matrix.column(whole=True)
             flow.columns.hold[strain, source, day] = hold
@@ -110,6 +108,16 @@ def _add_openings(flow: StockAndFlow, strain: int, sources: list[int]) -> None:
                 columns.append(column)
                 for flush in range(1, flushes + 1):
                     flow.ripens(strain, day + problem.flush_day(strain, flush), column, kg[flush - 1])
+        if len(sources) == 1:
+            # What is opened comes straight out of the only source; no column and row are needed in between.
+            row = flow.matrix.entries[flow.ready_rows[strain, sources[0], day]]
+            row.update(dict.fromkeys(columns, 1.0))
+            flow.columns.leaving[strain, sources[0], day] = columns
+            continue
         terms = [(column, 1.0) for column in columns]
-        terms += [(flow.columns.leave[strain, source, day], -1.0) for source in sources]
+        for source in sources:
+            leave = flow.matrix.column()
+            flow.matrix.entries[flow.ready_rows[strain, source, day]][leave] = 1.0
+            flow.columns.leaving[strain, source, day] = [leave]
+            terms.append((leave, -1.0))
         flow.matrix.row("opened", day, terms, low=0.0, high=0.0)

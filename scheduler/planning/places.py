@@ -68,7 +68,8 @@ def colony_traffic(flow: StockAndFlow, index: int, pool: Pool) -> Traffic:
         ready = day + problem.ready_days(strain, index)
         if loss and ready < problem.days:
             leaves.append((ready, column, loss))
-    for table in (columns.leave, columns.hold, columns.drop_ready):
+    leaves += _opened_from(flow, index)
+    for table in (columns.hold, columns.drop_ready):
         leaves += [(day, column, 1.0) for (_, source, day), column in table.items() if source == index]
     return Traffic(place_limit(pool), index, pool.places, enters, leaves, _waiting_stock(flow, index))
 
@@ -79,10 +80,15 @@ def cold_traffic(flow: StockAndFlow, pool: Pool) -> Traffic:
     enters: dict[int, list[int]] = {day: [] for day in flow.open_days}
     for (_, _, day), column in columns.hold.items():
         enters[day].append(column)
-    leaves: list[Leaving] = []
-    for table in (columns.leave, columns.drop_ready):
-        leaves += [(day, column, 1.0) for (_, source, day), column in table.items() if source == flow.cold]
+    leaves = _opened_from(flow, flow.cold)
+    leaves += [(day, column, 1.0) for (_, s, day), column in columns.drop_ready.items() if s == flow.cold]
     return Traffic(place_limit(pool), flow.cold, pool.places, enters, leaves, _waiting_stock(flow, flow.cold))
+
+
+def _opened_from(flow: StockAndFlow, source: int) -> list[Leaving]:
+    return [
+        (day, column, 1.0) for (_, s, day), members in flow.columns.leaving.items() if s == source for column in members
+    ]
 
 
 def fruit_traffic(flow: StockAndFlow, index: int, pool: Pool) -> Traffic:

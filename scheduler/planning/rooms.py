@@ -246,9 +246,9 @@ class House:
         sources = [*self.problem.colony_pools_for(strain), cold]
         planned = {}
         for source in sources:
-            column = self.flow.columns.leave.get((strain, source, day))
-            if column is not None:
-                planned[source] = min(round(self.values[column]), bags)
+            columns = self.flow.columns.leaving.get((strain, source, day))
+            if columns is not None:
+                planned[source] = min(round(sum(self.values[column] for column in columns)), bags)
         taken: list[tuple[Waiting, int]] = []
         for source, count in planned.items():
             taken += self._take(strain, source, min(count, bags - sum(n for _, n in taken)))

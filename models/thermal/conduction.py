@@ -1,0 +1,223 @@
+"""Transient conduction into a bag: eigenfunctions of the finite cylinder and the brick.
+
+A bag starts at one temperature and its surroundings change. The temperature inside is that of the surroundings less a
+sum of modes; each mode decays at its own rate and is fed by the change of the surroundings (Duhamel). The sum is exact
+up to the modes left out.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import lru_cache
+from math import inf, pi
+
+import numpy as np
+from numpy.typing import NDArray
+
+from models.farm import Bag
+
+Floats = NDArray[np.float64]
+MODES_A_SIDE = 14
+
+
+def plate_roots(biot: float, count: int) -> Floats:
+    """First roots of x tan x = Bi, for a plate of half thickness L [-].
+
+    Parameters
+    ----------
+    biot : float
+        h L / k, may be infinite [-].
+    count : int
+        Number of roots.
+
+    Examples
+    --------
+    Incropera table 5.1 gives 0.8603 for Bi = 1 (from memory):
+
+    >>> round(float(plate_roots(1.0, 1)[0]), 4)
+    0.8603
+    """
+    low = pi * np.arange(count)
+    if biot == inf:
+        return low + pi / 2
+    return _bisect(lambda x: x * np.sin(x) - biot * np.cos(x), low, low + pi / 2)
+
+
+def cylinder_roots(biot: float, count: int) -> Floats:
+    """First roots of x J1(x) = Bi J0(x), for a cylinder of radius R [-].
+
+    Examples
+    --------
+    Incropera table 5.1 gives 1.2558 for Bi = 1 (from memory):
+
+    >>> round(float(cylinder_roots(1.0, 1)[0]), 4)
+    1.2558
+    """
+    from scipy.special import j0, j1, jn_zeros
+
+    zeros0 = np.asarray(jn_zeros(0, count))
+    if biot == inf:
+        return zeros0
+    low = np.concatenate(([0.0], np.asarray(jn_zeros(1, count - 1)))) if count > 1 else np.zeros(1)
+    return _bisect(lambda x: x * j1(x) - biot * j0(x), low, zeros0)
+
+
+def sphere_roots(biot: float, count: int) -> Floats:
+    """First roots of 1 - x cot x = Bi, for a sphere of radius R [-].
+
+    Examples
+    --------
+    Incropera table 5.1 gives 1.5708 for Bi = 1 (from memory):
+
+    >>> round(float(sphere_roots(1.0, 1)[0]), 4)
+    1.5708
+    """
+    low = pi * np.arange(count)
+    if biot == inf:
+        return low + pi
+    return _bisect(lambda x: (1 - biot) * np.sin(x) - x * np.cos(x), low + 1e-9, low + pi - 1e-12)
+
+
+def _bisect(function: object, low: Floats, high: Floats) -> Floats:
+    assert callable(function)  # noqa: S101  (a private helper)
+    a, b = low.astype(float), high.astype(float)
+    sign = np.sign(function(b))
+    for _ in range(80):
+        middle = (a + b) / 2
+        upper = np.sign(function(middle)) == sign
+        b = np.where(upper, middle, b)
+        a = np.where(upper, a, middle)
+    return np.asarray((a + b) / 2)
+
+
+@dataclass(frozen=True)
+class Side:
+    """One direction of a body: roots, weights of the expansion of one, means and surface values of its modes [-]."""
+
+    roots: Floats
+    weights: Floats
+    means: Floats
+    length_m: float
+    round_: bool
+
+
+def plate_side(half_m: float, biot: float, count: int = MODES_A_SIDE) -> Side:
+    """Modes of a plate of half thickness ``half_m`` [m]."""
+    x = plate_roots(biot, count)
+    weights = 4 * np.sin(x) / (2 * x + np.sin(2 * x))
+    return Side(x, weights, np.sin(x) / x, half_m, round_=False)
+
+
+def cylinder_side(radius_m: float, biot: float, count: int = MODES_A_SIDE) -> Side:
+    """Modes of a long cylinder of radius ``radius_m`` [m]."""
+    from scipy.special import j0, j1
+
+    x = cylinder_roots(biot, count)
+    weights = 2 * j1(x) / (x * (j0(x) ** 2 + j1(x) ** 2))
+    return Side(x, weights, 2 * j1(x) / x, radius_m, round_=True)
+
+
+@dataclass(frozen=True)
+class Modes:
+    """A body's modes as products over its sides.
+
+    Attributes
+    ----------
+    rates : ndarray
+        Decay rates [1/s, by mode].
+    core, mean : ndarray
+        Share of each mode in the temperature deficit of the centre and of the mean [-, by mode].
+    sides : tuple of Side
+        The directions the modes are products of.
+    """
+
+    rates: Floats
+    core: Floats
+    mean: Floats
+    sides: tuple[Side, ...]
+
+    def centre_theta(self, seconds: float) -> float:
+        """(T - T_inf) / (T_0 - T_inf) at the centre after a step of the surroundings [-]."""
+        return float(self.core @ np.exp(-self.rates * seconds))
+
+    def mean_theta(self, seconds: float) -> float:
+        """The same for the mean temperature [-]."""
+        return float(self.mean @ np.exp(-self.rates * seconds))
+
+
+def product_modes(sides: tuple[Side, ...], diffusivity_m2_s: float) -> Modes:
+    """Modes of a body that is the product of its sides (finite cylinder, brick)."""
+    rates, core, mean = np.zeros(1), np.ones(1), np.ones(1)
+    for side in sides:
+        rate = diffusivity_m2_s * (side.roots / side.length_m) ** 2
+        rates = np.add.outer(rates, rate).ravel()
+        core = np.multiply.outer(core, side.weights).ravel()
+        mean = np.multiply.outer(mean, side.weights * side.means).ravel()
+    return Modes(rates, core, mean, sides)
+
+
+@lru_cache(maxsize=512)
+def bag_modes(bag: Bag, diffusivity_m2_s: float, conductivity_w_m_k: float, surface_w_m2_k: float) -> Modes:
+    """Modes of a bag in surroundings with a surface coefficient; all faces see them.
+
+    Parameters
+    ----------
+    bag : Bag
+        Shape and full lengths.
+    diffusivity_m2_s, conductivity_w_m_k : float
+        Of the filled bag [m²/s], [W/m K].
+    surface_w_m2_k : float
+        Surface coefficient, may be infinite [W/m² K].
+    """
+
+    def biot(half_m: float) -> float:
+        return surface_w_m2_k * half_m / conductivity_w_m_k
+
+    if bag.diameter_mm is not None:
+        radius, half = bag.diameter_mm / 2000, bag.height_mm / 2000
+        return product_modes((cylinder_side(radius, biot(radius)), plate_side(half, biot(half))), diffusivity_m2_s)
+    assert bag.length_mm is not None and bag.width_mm is not None  # noqa: S101  (held by the farm file)
+    halves = [length / 2000 for length in (bag.length_mm, bag.width_mm, bag.height_mm)]
+    sides = tuple(plate_side(half, biot(half), count=9) for half in halves)
+    return product_modes(sides, diffusivity_m2_s)
+
+
+def project(state: Floats, old: Modes, new: Modes) -> Floats:
+    """The state of the modes after the surface coefficient has changed.
+
+    Parameters
+    ----------
+    state : ndarray
+        Amplitudes in the old modes: the deficit is the sum of amplitude times weight times shape [K, by mode].
+    old, new : Modes
+        Modes of the same body under two surface coefficients.
+
+    Returns
+    -------
+    ndarray
+        Amplitudes in the new modes for the same deficit field [K, by mode].
+
+    Notes
+    -----
+    Both sets are orthogonal on the body; the overlap of one direction is integrated by Gauss-Legendre quadrature.
+    """
+    shape = tuple(len(side.roots) for side in old.sides)
+    field = (state * old.core).reshape(shape)
+    for axis, (a, b) in enumerate(zip(old.sides, new.sides, strict=True)):
+        field = np.moveaxis(np.tensordot(_overlap(a, b), field, axes=(1, axis)), 0, axis)
+    weights = new.core
+    return np.asarray(field.ravel() / weights)
+
+
+def _overlap(old: Side, new: Side) -> Floats:
+    """Expansion of each old mode shape in the new ones, along one direction [new, old]."""
+    nodes, quadrature = np.polynomial.legendre.leggauss(96)
+    x, weight = (nodes + 1) / 2, quadrature / 2
+    if old.round_:
+        from scipy.special import j0
+
+        shape_old, shape_new, weight = j0(np.outer(old.roots, x)), j0(np.outer(new.roots, x)), weight * x
+    else:
+        shape_old, shape_new = np.cos(np.outer(old.roots, x)), np.cos(np.outer(new.roots, x))
+    norms = (shape_new**2) @ weight
+    return np.asarray(((shape_new * weight) @ shape_old.T) / norms[:, None])
