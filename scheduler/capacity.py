@@ -14,6 +14,7 @@ from models.farm import Farm, Programme, Steriliser, Strain
 from models.growth import days_to_ready, flush_kg, kg_per_bag, place_days, suits
 from models.thermal.errors import ThermalError
 from models.thermal.table import CycleRow, cycle_row
+from scheduler.errors import Finding
 from scheduler.repeating_week import RepeatingWeek, Run, clock
 
 WEEKS = 8
@@ -39,6 +40,8 @@ class Capacity:
         How that was worked out, with the numbers.
     month : int or None
         The month it holds for, where that matters.
+    steriliser, programme, strain : str
+        Codes of what it holds for; empty where it holds for any.
     """
 
     stage: str
@@ -47,6 +50,9 @@ class Capacity:
     kg_week: float | None
     how: str
     month: int | None = None
+    steriliser: str = ""
+    programme: str = ""
+    strain: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -118,24 +124,43 @@ def _counted(runs: tuple[Run, ...]) -> list[Run]:
 
 
 def _sterilising(farm: Farm, steam: SteamWeek) -> Capacity:
+    steriliser, programme = steam.steriliser, steam.programme
+    bags, how = _runs_in_words(farm, steam)
+    what = f"{steriliser.code}, {programme.code}"
+    return Capacity(
+        "sterilise", what, bags, None, how, steam.month, steriliser=steriliser.code, programme=programme.code
+    )
+
+
+def _runs_in_words(farm: Farm, steam: SteamWeek) -> tuple[float, str]:
+    """Bags a week of all sterilisers of a kind, and how that comes about."""
     steriliser, bags = steam.steriliser, steam.steriliser.bags_at(steam.steriliser.loads[-1])
-    what = f"{steriliser.code}, {steam.programme.code}"
     if steam.row is None:
-        return Capacity("sterilise", what, 0.0, None, steam.refusal, steam.month)
+        return 0.0, steam.refusal
     hours = f"ready {_h_min(steam.row.ready_to_unload_min)} after steam on"
     counted = _counted(steam.runs)
     if not counted:
-        how = f"{hours}; no full load of {bags} bags can be mixed, loaded, unloaded and inoculated in time"
-        return Capacity("sterilise", what, 0.0, None, how, steam.month)
-    a_week = len(counted) / WEEKS
+        return 0.0, f"{hours}; no full load of {bags} bags can be mixed, loaded, unloaded and inoculated in time"
+    a_week, first = len(counted) / WEEKS, counted[0]
     count = f"{steriliser.count} x " if steriliser.count > 1 else ""
-    first = counted[0]
     how = (
         f"{count}{a_week:.3g} runs a week x {bags} bags; a full load is {hours}"
         f" (loaded {clock(first.load)}, ready {clock(first.ready)}, out {clock(first.unload)})"
         f"{_supply_note(farm, steriliser)}"
     )
-    return Capacity("sterilise", what, steriliser.count * a_week * bags, None, how, steam.month)
+    return steriliser.count * a_week * bags, how
+
+
+def idle_findings(farm: Farm, found: tuple[Capacity, ...]) -> tuple[Finding, ...]:
+    """Warn of programmes whose full load no steriliser can run, in any month looked at."""
+    findings = []
+    for programme in farm.programme:
+        rows = [one for one in found if one.stage == "sterilise" and one.programme == programme.code]
+        if rows and not any(row.bags_week for row in rows):
+            expected = "a steriliser that can run full loads of it"
+            key = f"programme.{programme.code}"
+            findings.append(Finding("farm.toml", key, f"none ({rows[0].how})", expected, severity="warning"))
+    return tuple(findings)
 
 
 def _supply_note(farm: Farm, steriliser: Steriliser) -> str:
@@ -183,7 +208,7 @@ def _colonising(farm: Farm) -> Iterator[Capacity]:
         bags = sum(room.places * 7 / days for room, days in rooms)
         kg = bags * (1 - strain.loss_pct / 100) * _kg(farm, strain)
         how = f"7 days x {' + '.join(terms)}; {strain.loss_pct:g} % are lost"
-        yield Capacity("colonise", strain.code, bags, kg, how)
+        yield Capacity("colonise", strain.code, bags, kg, how, strain=strain.code)
 
 
 def _kg(farm: Farm, strain: Strain) -> float:
@@ -212,7 +237,7 @@ def _fruiting(farm: Farm) -> Iterator[Capacity]:
             terms = [f"{room.places} places in {room.code} / {held} days" for room, held in days]
             how = f"7 days x {' + '.join(terms)}; {kg:.3g} kg a bag"
             what = f"{strain.code}, {flushes} flush{'es' if flushes > 1 else ''} kept"
-            yield Capacity("fruit", what, bags, bags * kg, how)
+            yield Capacity("fruit", what, bags, bags * kg, how, strain=strain.code)
 
 
 def _picking(farm: Farm, week: RepeatingWeek) -> Iterator[Capacity]:
@@ -220,7 +245,7 @@ def _picking(farm: Farm, week: RepeatingWeek) -> Iterator[Capacity]:
     for strain in farm.strain:
         kg = _kg(farm, strain)
         how = f"{_hours(week, 'pick', hours)} x {rate:g} kg an hour / {kg:.3g} kg a bag"
-        yield Capacity("pick", strain.code, hours * rate / kg, hours * rate, how)
+        yield Capacity("pick", strain.code, hours * rate / kg, hours * rate, how, strain=strain.code)
 
 
 def month_in_words(month: int | None) -> str:

@@ -9,7 +9,7 @@ import pytest
 from models.growth import days_to_ready
 from models.thermal.errors import ThermalError
 from scheduler import capacity
-from scheduler.capacity import capacities
+from scheduler.capacity import capacities, idle_findings
 from scheduler.folder import read_farm_folder
 
 BASE = Path(__file__).parent / "broken_farms" / "base"
@@ -49,6 +49,7 @@ def test_stages_by_hand(farm, known_cycle):
     assert known_cycle == [
         ("drum", "overnight", [("oak62", "2k3"), ("oak62", "block")], 1.0, month) for month in (1, 7)
     ]
+    assert idle_findings(farm, found) == ()
     assert stage(found, "mix").bags_week == 95 * 30
     # loaded on Mon to Sat at 09:20 or as early as can be, out the next morning: six runs of 110
     assert stage(found, "sterilise").bags_week == 660
@@ -98,6 +99,9 @@ def test_a_programme_that_cannot_be_reached_is_nothing_with_the_reason(farm, mon
     row = stage(found, "sterilise")
     assert (row.bags_week, row.how) == (0.0, "too hot")
     assert not any(one.stage == "cool" for one in found)
+    (finding,) = idle_findings(farm, found)
+    assert (finding.key, finding.severity) == ("programme.overnight", "warning")
+    assert "too hot" in finding.sentence()
 
 
 @pytest.mark.usefixtures("known_cycle")

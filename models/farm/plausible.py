@@ -8,13 +8,19 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 from datetime import timedelta
+from math import floor
 
 from models.farm.crew import SKILLS
 from models.farm.farm import Farm
 from models.farm.references import Mismatch, Severity
 from models.farm.room import Room
 from models.farm.units import span_minutes
+from models.thermal.steam import boiling_point, same_kill_factor
 
+BELOW_BOILING_K = 0.05
+"""A core cannot be brought nearer than this to the temperature of the steam round it in finite time [K]."""
+MOST_HOLD_H = 48.0
+"""Longest hold worth proposing in place of a hotter one [h]."""
 MASS_ERROR = (0.4, 2.0)
 """Bag mass over volume × density outside of this is taken for a wrong unit [-]."""
 MASS_WARNING = (0.7, 1.4)
@@ -82,6 +88,25 @@ def supply_carries_elements(farm: Farm) -> Iterator[Mismatch]:
                 f"{steriliser.element_kw:g} kW",
                 f"at most {max(0.0, supply - base):g} kW (supply_kw {supply:g} less base_load_kw {base:g})",
             )
+
+
+def programmes_reached(farm: Farm) -> Iterator[Mismatch]:
+    """Each programme that a strain names stays below the boiling point of some steriliser."""
+    hottest = max(farm.steriliser, key=lambda one: boiling_point(farm.site.altitude_m, one.gauge_kpa, one.air_fraction))
+    boiling = boiling_point(farm.site.altitude_m, hottest.gauge_kpa, hottest.air_fraction)
+    used = {strain.programme for strain in farm.strain}
+    for programme in farm.programme:
+        if programme.code not in used or programme.target_core_c < boiling - BELOW_BOILING_K:
+            continue
+        expected = (
+            f"below the boiling point, {boiling:.1f} °C at {farm.site.altitude_m:g} m"
+            f" and {hottest.gauge_kpa:g} kPa gauge in steriliser {hottest.code}"
+        )
+        lower = floor(2 * (boiling - BELOW_BOILING_K)) / 2
+        hold_h = programme.hold_h * same_kill_factor(programme.target_core_c, lower)
+        if 0 < hold_h <= MOST_HOLD_H:
+            expected += f" ({hold_h:.1f} h at {lower:g} °C kill as much, at a z of 10 °C)"
+        yield Mismatch(f"programme.{programme.code}.target_core_c", f"{programme.target_core_c:g} °C", expected)
 
 
 def sterilisers_open(farm: Farm) -> Iterator[Mismatch]:
@@ -164,6 +189,7 @@ CHECKS: tuple[tuple[Callable[[Farm], Iterator[Mismatch]], frozenset[str]], ...] 
     (skills_held, frozenset({"crew"})),
     (bag_masses, frozenset({"strain", "recipe", "bag"})),
     (supply_carries_elements, frozenset({"site", "steriliser"})),
+    (programmes_reached, frozenset({"site", "programme", "steriliser", "strain"})),
     (sterilisers_open, frozenset({"steriliser"})),
     (bags_cool_down, frozenset({"site", "limits", "steriliser", "room"})),
     (rooms_carry_heat_off, frozenset({"strain", "bag", "room"})),

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 from pathlib import Path
 from typing import Annotated
 
@@ -21,8 +22,6 @@ def check(
 
     Exit code 0: no findings; 1: warnings only; 2: errors.
     """
-    import json
-
     from scheduler.errors import InputError
     from scheduler.folder import read_farm_folder
 
@@ -31,7 +30,7 @@ def check(
 
         typer.echo(farm_schema_text(), nl=False)
         return
-    from scheduler.capacity import MONTHS, capacities
+    from scheduler.capacity import MONTHS, capacities, idle_findings
     from scheduler.views.check import check_document, show_check
 
     try:
@@ -45,11 +44,12 @@ def check(
                 typer.echo(prefix + finding.sentence(), err=True)
         raise typer.Exit(error.exit_code) from error
     stages = capacities(folder.farm, (month,) if month else MONTHS)
+    findings = folder.findings + idle_findings(folder.farm, stages)
     if as_json:
-        document = check_document(folder.farm.site.name, folder.findings, stages)
+        document = check_document(folder.farm.site.name, findings, stages)
         typer.echo(json.dumps(document, indent=2, ensure_ascii=False))
     else:
         from rich.console import Console
 
-        show_check(Console(highlight=False, emoji=False, markup=False), folder.farm.site.name, folder.findings, stages)
-    raise typer.Exit(1 if folder.findings else 0)
+        show_check(Console(highlight=False, emoji=False, markup=False), folder.farm.site.name, findings, stages)
+    raise typer.Exit(1 if findings else 0)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 from pathlib import Path
 from typing import Annotated
 
@@ -14,8 +15,6 @@ def new(
     as_json: Annotated[bool, typer.Option("--json", help="Print one JSON document.")] = False,
 ) -> None:
     """Make a farm folder to start from, with an invented farm in it."""
-    import json
-
     from scheduler.folder.create import create_farm_folder
 
     files = create_farm_folder(folder, like)

@@ -161,3 +161,10 @@ def test_colour_only_where_it_is_wanted(monkeypatch):
     assert "\x1b[33m" in printed(80, force_terminal=True, color_system="standard")
     monkeypatch.setenv("NO_COLOR", "1")
     assert "\x1b[33m" not in printed(80, force_terminal=True, color_system="standard")
+
+
+def test_a_steriliser_too_weak_to_heat_its_load_is_a_warning(farm):
+    change(farm / "farm.toml", "loss_w_per_k = 9.0", "loss_w_per_k = 80.0")
+    done = run("--farm", str(farm))
+    assert done.exit_code == 1, done.output
+    assert "farm.toml, programme.overnight: expected a steriliser that can run full loads" in done.stdout
