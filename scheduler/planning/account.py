@@ -31,7 +31,10 @@ def picked_openings(
     flow: StockAndFlow, values: FloatArray, housed: Housed, lot_strain: dict[str, str]
 ) -> tuple[Opening, ...]:
     """Openings with the kilograms that are picked of each flush: by strain and day, the planned total, in order."""
-    left = {key: max(0.0, float(values[column])) for key, column in flow.columns.pick.items()}
+    left = {
+        key: max(0.0, float(sum(values[column] for column in members)))
+        for key, members in flow.columns.picked.items()
+    }
     codes = {strain.code: k for k, strain in enumerate(flow.problem.strains)}
     opened = []
     for opening in housed.openings:
@@ -53,8 +56,11 @@ def deliveries_of(flow: StockAndFlow, values: FloatArray) -> tuple[Delivery, ...
     unavoidable = unavoidable_kilograms(flow.problem)
     first = flow.problem.clock.first_day
     found = []
-    for item, columns, lost in zip(flow.problem.order_days, flow.columns.deliver, unavoidable, strict=True):
-        kg = sum(max(0.0, float(values[column])) for column in columns)
+    served: dict[int, float] = {}
+    for (index, _), column in flow.columns.serve.items():
+        served[index] = served.get(index, 0.0) + max(0.0, float(values[column]))
+    for index, (item, lost) in enumerate(zip(flow.problem.order_days, unavoidable, strict=True)):
+        kg = served.get(index, 0.0)
         kg = item.kg if kg > item.kg - DUST else (0.0 if kg < DUST else kg)
         short = item.kg - kg
         order = flow.problem.orders[item.order]
@@ -66,10 +72,14 @@ def deliveries_of(flow: StockAndFlow, values: FloatArray) -> tuple[Delivery, ...
 def surplus_of(flow: StockAndFlow, values: FloatArray) -> tuple[Surplus, ...]:
     """Spot sales by strain and day."""
     first = flow.problem.clock.first_day
+    sold: dict[tuple[int, int], float] = {}
+    for (strain, day, week), column in flow.columns.spot.items():
+        if values[column] > DUST:
+            sale = max(day, 7 * week)
+            sold[sale, strain] = sold.get((sale, strain), 0.0) + float(values[column])
     return tuple(
-        Surplus(flow.problem.strains[strain].code, first + timedelta(days=day), float(values[column]), 0.0)
-        for (strain, day), column in sorted(flow.columns.spot.items(), key=lambda item: (item[0][1], item[0][0]))
-        if values[column] > DUST
+        Surplus(flow.problem.strains[strain].code, first + timedelta(days=day), kg, 0.0)
+        for (day, strain), kg in sorted(sold.items())
     )
 
 

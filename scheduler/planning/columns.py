@@ -33,8 +33,8 @@ class Columns:
     keep: dict[tuple[int, int], int] = field(default_factory=dict)  # fruiting stock lot, flushes in all
     drop_cooled: dict[tuple[int, int], int] = field(default_factory=dict)  # strain, day
     drop_ready: dict[tuple[int, int, int], int] = field(default_factory=dict)  # strain, source, day
-    pick: dict[tuple[int, int], int] = field(default_factory=dict)  # strain, day
-    deliver: list[tuple[int, int]] = field(default_factory=list)  # order day: within need, beyond the avoidable
-    spot: dict[tuple[int, int], int] = field(default_factory=dict)  # strain, day
+    serve: dict[tuple[int, int], int] = field(default_factory=dict)  # order day (index), pick day
+    picked: dict[tuple[int, int], list[int]] = field(default_factory=dict)  # strain, day: all that is sold of it
+    spot: dict[tuple[int, int, int], int] = field(default_factory=dict)  # strain, pick day, week of the sale
     hours: dict[tuple[int, str, int], int] = field(default_factory=dict)  # crew, skill, day
     over: dict[tuple[str, int], int] = field(default_factory=dict)  # limit, day

@@ -32,8 +32,9 @@ def labour_needs(flow: StockAndFlow) -> dict[tuple[str, int], Terms]:
         lot = flow.problem.stock.fruiting[index]
         last = lot.flush_days[kept - lot.picked - 1] if kept > lot.picked else 0
         need("open", flow.leave_day(last), column, 1 / rates.discard_bags_h)
-    for (_, day), column in columns.pick.items():
-        need("pick", day, column, 1 / rates.pick_kg_h)
+    for (_, day), members in columns.picked.items():
+        for column in members:
+            need("pick", day, column, 1 / rates.pick_kg_h)
     return needs
 
 
@@ -58,10 +59,10 @@ def add_hands(flow: StockAndFlow) -> None:
         if skill == "inoculate":
             benches = problem.shifts.bench_hours(day)
             if benches is not None:
-                matrix.row("benches", day, terms, high=benches)
+                flow.hour_rows.append((matrix.row("benches", day, terms, high=benches), benches))
     for crew in problem.farm.crew:
         for day in range(problem.days):
             terms = worked.get((crew.code, day), [])
             if terms:
                 shift = next(s for skill in SKILLS for s in problem.shifts.on(day, skill) if s.crew is crew)
-                matrix.row(f"shift {crew.code}", day, terms, high=shift.hours)
+                flow.hour_rows.append((matrix.row(f"shift {crew.code}", day, terms, high=shift.hours), shift.hours))

@@ -138,6 +138,7 @@ def add_occupancy(flow: StockAndFlow, traffic: Traffic) -> None:
         previous = steps[step - 1] if step else -1
         following = steps[step + 1] if step + 1 < len(steps) else flow.problem.days
         state = matrix.column(high=float(traffic.places))
+        flow.place_states.append((state, float(traffic.places)))
         terms = [(state, 1.0), *((column, -1.0) for column in traffic.enters.get(day, ())), *going[step]]
         if before is not None:
             terms.append((before, -1.0))

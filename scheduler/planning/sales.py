@@ -1,4 +1,8 @@
-"""Picks into deliveries within shelf life, spot sales, and the money they bring."""
+"""Ripe kilograms to order days within shelf life, to the spot market, or left on the bag.
+
+Each order day is served straight from the pick days whose mushrooms are still good, so that freshness needs no stock
+to be followed. With the whole season known, only what is sold is picked; the rest spoils unpicked.
+"""
 
 from __future__ import annotations
 
@@ -8,57 +12,42 @@ from scheduler.planning.stock_and_flow import StockAndFlow
 
 
 def add_sales(flow: StockAndFlow, unavoidable: Sequence[float]) -> None:
-    """Columns for picked, delivered and spot kilograms; rows for what is ripe, fresh and wanted.
-
-    With the whole season known, only what is sold is picked: the rest is left on the bag and counts as spoiled.
-    """
+    """Columns for kilograms from each pick day to each order day and to the spot; rows for what is ripe and wanted."""
     problem, matrix, columns = flow.problem, flow.matrix, flow.columns
     market = problem.farm.market
-    delivered: dict[tuple[int, int], list[int]] = {}
-    for item, lost in zip(problem.order_days, unavoidable, strict=True):
-        within = matrix.column(gain=item.price + item.penalty, high=max(0.0, item.kg - lost))
-        beyond = matrix.column(gain=item.price, high=min(item.kg, lost))
-        columns.deliver.append((within, beyond))
-        delivered.setdefault((item.strain, item.day), []).extend((within, beyond))
-        matrix.constant -= item.penalty * max(0.0, item.kg - lost)
+    sold: dict[tuple[int, int], list[int]] = {key: [] for key in flow.ripe}
+    for index, (item, lost) in enumerate(zip(problem.order_days, unavoidable, strict=True)):
+        wanted = max(0.0, item.kg - lost)
+        matrix.constant -= item.penalty * wanted
+        life = problem.strains[item.strain].shelf_life_days
+        served = []
+        for day in range(item.day - life, item.day + 1):
+            if (item.strain, day) in sold:
+                column = matrix.column(gain=item.price + item.penalty + market.spoilage_per_kg)
+                columns.serve[index, day] = column
+                sold[item.strain, day].append(column)
+                served.append(column)
+        if served:
+            terms = [(column, 1.0) for column in served]
+            if lost > 0:
+                # What goes beyond the avoidable earns its price, but saves no shortage.
+                beyond = matrix.column(gain=-item.penalty, high=min(item.kg, lost))
+                terms.append((beyond, -1.0))
+            matrix.row("order", index, terms, high=wanted)
     spot_weeks: dict[int, list[tuple[int, float]]] = {}
-    for strain in sorted({s for s, _ in flow.ripe} | {item.strain for item in problem.order_days}):
+    for (strain, day), ripe in sorted(flow.ripe.items()):
         price = problem.spot_price(strain) if market.spot_kg_week > 0 else 0.0
-        ripe_days = {day for s, day in flow.ripe if s == strain}
-        days = sorted(ripe_days | {day for s, day in delivered if s == strain})
-        before: int | None = None
-        for day in days:
-            state = matrix.column()
-            terms = [(state, 1.0), *((column, 1.0) for column in delivered.get((strain, day), ()))]
-            if day in ripe_days:
-                pick = matrix.column(gain=market.spoilage_per_kg)
-                columns.pick[strain, day] = pick
-                ripe = flow.ripe[strain, day]
-                matrix.row("ripe", day, [(pick, 1.0), *((column, -kg) for column, kg in ripe)], high=0.0)
-                for column, kg in ripe:
-                    matrix.gain[column] -= kg * market.spoilage_per_kg
-                terms.append((pick, -1.0))
-                if price > 0:
-                    spot = matrix.column(gain=price)
-                    columns.spot[strain, day] = spot
-                    spot_weeks.setdefault(day // 7, []).append((spot, 1.0))
-                    terms.append((spot, 1.0))
-            if before is not None:
-                terms.append((before, -1.0))
-            matrix.row("picked", day, terms, low=0.0, high=0.0)
-            _add_freshness(flow, strain, day, days, state)
-            before = state
+        last = min(day + problem.strains[strain].shelf_life_days, problem.days - 1)
+        for week in range(day // 7, last // 7 + 1) if price > 0 else ():
+            spot = matrix.column(gain=price + market.spoilage_per_kg)
+            columns.spot[strain, day, week] = spot
+            sold[strain, day].append(spot)
+            spot_weeks.setdefault(week, []).append((spot, 1.0))
+        terms = [(column, 1.0) for column in sold[strain, day]]
+        if terms:
+            columns.picked[strain, day] = sold[strain, day]
+            matrix.row("ripe", day, terms + [(column, -kg) for column, kg in ripe], high=0.0)
+        for column, kg in ripe:
+            matrix.gain[column] -= kg * market.spoilage_per_kg
     for week, terms in sorted(spot_weeks.items()):
         matrix.row("spot", week * 7, terms, high=market.spot_kg_week)
-
-
-def _add_freshness(flow: StockAndFlow, strain: int, day: int, days: Sequence[int], state: int) -> None:
-    """What is kept past a day was picked recently enough to be sold on the next day that matters."""
-    life = flow.problem.strains[strain].shelf_life_days
-    following = next((other for other in days if other > day), flow.problem.days)
-    recent = [
-        (flow.columns.pick[strain, earlier], -1.0)
-        for earlier in range(max(0, following - life), day + 1)
-        if (strain, earlier) in flow.columns.pick
-    ]
-    flow.matrix.row("fresh", day, [(state, 1.0), *recent], high=0.0)

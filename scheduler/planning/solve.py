@@ -21,6 +21,7 @@ from scheduler.planning.account import (
     shortfalls_of,
     surplus_of,
 )
+from scheduler.planning.bold import bold_plan
 from scheduler.planning.build import build_model
 from scheduler.planning.dive import Dead, Style, dive
 from scheduler.planning.engine import SEED, Answer, FloatArray, Relaxation, branch
@@ -93,6 +94,9 @@ class Planner:
         self._tell("solving the relaxation", search)
         relaxation, values, search.bound = relax_within_supply(self.flow, self.supply)
         self.relaxation_seconds = (time.perf_counter() - started) / max(1, relaxation.solves)
+        if relaxation.large:
+            self._round_boldly(search, relaxation, values)
+            return
         base = Answer(values, search.bound, search.bound, "optimal")
         for number, window in enumerate(RUN_WINDOWS):
             if number:
@@ -135,6 +139,19 @@ class Planner:
             return
         if answer.values is not None:
             self._offer(search, answer.values, made)
+
+    def _round_boldly(self, search: _Search, relaxation: Relaxation, values: FloatArray) -> None:
+        """Large farms: one rounding a stage."""
+        low, high = bounds_of(self.flow.matrix)
+        self._tell("rounding runs and bags", search)
+        try:
+            answer, made = bold_plan(self.flow, relaxation, values, low, high)
+        except Dead:
+            search.stop = "rounding found no plan"
+            return
+        if answer.values is not None:
+            self._offer(search, answer.values, made)
+        search.stop = "gap reached" if search.gap <= self.limits.gap else "one rounding done"
 
     def _exact(self, search: _Search) -> None:
         """On small farms, search all whole numbers at once; it also lowers the bound."""

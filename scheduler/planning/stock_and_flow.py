@@ -21,7 +21,8 @@ class StockAndFlow:
     """A matrix under construction with what its columns mean.
 
     ``sources`` of a strain's ready bags are its colonisation pools and, as the index after the last pool, the cold.
-    ``ripe`` holds, by strain and day, the columns of bags that ripen then with their kilograms a bag.
+    ``ripe`` holds, by strain and day, the columns of bags that ripen then with their kilograms a bag; ``place_states``
+    the columns of bags in rooms with their places; ``hour_rows`` the rows of shifts and benches with their hours.
     """
 
     problem: Problem
@@ -33,6 +34,8 @@ class StockAndFlow:
     ready_rows: dict[tuple[int, int, int], int] = field(default_factory=dict)
     wait_rows: dict[tuple[int, int, int], int] = field(default_factory=dict)
     place_rows: dict[int, dict[int, int]] = field(default_factory=dict)
+    place_states: list[tuple[int, float]] = field(default_factory=list)
+    hour_rows: list[tuple[int, float]] = field(default_factory=list)
     _group_index: dict[GroupKey, int] = field(default_factory=dict)
 
     def __post_init__(self) -> None:

@@ -94,6 +94,13 @@ def whole_bags(
     return answer, made
 
 
+def fix(relaxation: Relaxation, low: FloatArray, high: FloatArray, values: dict[int, float]) -> None:
+    """Fix columns at values."""
+    for column, value in values.items():
+        low[column] = high[column] = value
+        relaxation.bound(column, value, value)
+
+
 def bounds_of(matrix: Matrix) -> tuple[FloatArray, FloatArray]:
     """Fresh column bounds of a matrix."""
     return np.array(matrix.column_low), np.array(matrix.column_high)

@@ -1,0 +1,234 @@
+"""Whole numbers for large farms: one rounding a stage, with a few places and minutes kept back for it.
+
+On a large farm a relaxation takes seconds and one bag is a thousandth of a day, so each stage is rounded at once:
+runs by a small network problem near the relaxation, then bags by rounding running totals, which conserves them and
+shifts none by more than one.
+"""
+
+from __future__ import annotations
+
+from math import floor
+
+import numpy as np
+
+from scheduler.planning.dive import WHOLE_TOLERANCE, Dead, fraction
+from scheduler.planning.engine import Answer, FloatArray, Relaxation, branch
+from scheduler.planning.lots import Made, make_lots
+from scheduler.planning.matrix import Matrix
+from scheduler.planning.stock_and_flow import StockAndFlow
+from scheduler.planning.whole import allow_discards, fix, whole_losses
+
+ROUNDING_SECONDS = 20.0
+ROUNDING_NODES = 2_000
+
+
+def bold_plan(
+    flow: StockAndFlow, relaxation: Relaxation, base: FloatArray, low: FloatArray, high: FloatArray
+) -> tuple[Answer, Made]:
+    """Round runs, fillings, inoculations and openings one after the other.
+
+    Raises
+    ------
+    Dead
+        A stage has no solution after the rounding before it.
+    """
+    fix(relaxation, low, high, round_runs(flow, base))
+    keep_back(flow, relaxation)
+    allow_discards(flow, relaxation, high)
+    answer = _solved(relaxation)
+    assert answer.values is not None  # noqa: S101  (_solved raises otherwise)
+    fills = round_fills(flow, answer.values)
+    fix(relaxation, low, high, fills)
+    fix(relaxation, low, high, round_inoculations(flow, answer.values, fills))
+    whole = answer.values.copy()
+    for column in range(len(whole)):
+        if low[column] == high[column]:
+            whole[column] = low[column]
+    made = make_lots(flow, whole)
+    whole_losses(flow, made, relaxation)
+    answer = _solved(relaxation)
+    assert answer.values is not None  # noqa: S101
+    fix(relaxation, low, high, round_openings(flow, answer.values))
+    give_back(flow, relaxation)
+    return _solved(relaxation), made
+
+
+def _solved(relaxation: Relaxation) -> Answer:
+    answer = relaxation.solve()
+    if answer.values is None:
+        raise Dead
+    return answer
+
+
+def keep_back(flow: StockAndFlow, relaxation: Relaxation) -> None:
+    """Keep a few places and minutes free, so that rounding up does not pass a limit."""
+    rates = flow.problem.farm.rates
+    slowest = min(rates.mix_bags_h, rates.inoculate_bags_h, rates.open_bags_h, rates.discard_bags_h)
+    bags = 2.0 * len(flow.active)
+    for column, places in flow.place_states:
+        if flow.matrix.column_high[column] == places:
+            relaxation.bound(column, 0.0, places - min(bags, 0.02 * places))
+    for row, hours in flow.hour_rows:
+        relaxation.bound_row(row, -np.inf, hours - min(bags / slowest, 0.05 * hours))
+
+
+def give_back(flow: StockAndFlow, relaxation: Relaxation) -> None:
+    """Undo `keep_back`."""
+    for column, places in flow.place_states:
+        if flow.matrix.column_high[column] == places:
+            relaxation.bound(column, 0.0, places)
+    for row, hours in flow.hour_rows:
+        relaxation.bound_row(row, -np.inf, hours)
+
+
+def round_runs(flow: StockAndFlow, values: FloatArray) -> dict[int, float]:
+    """Whole runs near the relaxation's: places steamed by the end of each week stay near, sterilisers keep their turn.
+
+    A small whole-number problem of its own: each run column may go to the whole number below or above.
+    """
+    small = Matrix()
+    arcs = flow.problem.arcs
+    index: dict[int, int] = {}
+    for column in flow.columns.run:
+        value = float(values[column])
+        below = floor(value + WHOLE_TOLERANCE)
+        above = below + (1 if fraction(value) else 0)
+        index[column] = small.column(gain=1e-3 * (value - below - 0.5), low=below, high=above, whole=True)
+    for row, (name, _) in enumerate(flow.matrix.row_name):
+        if name.startswith("steriliser ") or name == "supply":
+            terms = []
+            for column, factor in flow.matrix.entries[row].items():
+                if column not in index:
+                    index[column] = small.column(high=flow.matrix.column_high[column])
+                terms.append((index[column], factor))
+            small.row(name, row, terms, low=flow.matrix.row_low[row], high=flow.matrix.row_high[row])
+    lanes: dict[tuple[int, int], dict[int, list[int]]] = {}
+    for k, arc in enumerate(arcs):
+        lanes.setdefault((arc.steriliser, arc.kind), {}).setdefault(arc.load_day // 7, []).append(k)
+    for (_, _), weeks in sorted(lanes.items()):
+        wanted, before = 0.0, None
+        for week in sorted(weeks):
+            here = [(index[flow.columns.run[k]], float(arcs[k].bags)) for k in weeks[week]]
+            wanted += sum(float(values[flow.columns.run[k]]) * arcs[k].bags for k in weeks[week])
+            total = small.column()
+            terms = [(total, 1.0), *((column, -bags) for column, bags in here)]
+            if before is not None:
+                terms.append((before, -1.0))
+            small.row("steamed", week, terms, low=0.0, high=0.0)
+            over, under = small.column(gain=-1.0 / arcs[0].bags), small.column(gain=-1.0 / arcs[0].bags)
+            small.row("near", week, [(total, 1.0), (over, -1.0), (under, 1.0)], low=wanted, high=wanted)
+            before = total
+    answer = branch(
+        small, np.array(small.column_low), np.array(small.column_high), np.array(small.whole), gap=0.02,
+        seconds=ROUNDING_SECONDS, nodes=ROUNDING_NODES,
+    )  # fmt: skip
+    if answer.values is None:
+        raise Dead
+    return {column: float(round(answer.values[index[column]])) for column in flow.columns.run}
+
+
+def round_fills(flow: StockAndFlow, values: FloatArray) -> dict[int, float]:
+    """Whole bags in each group of runs: each strain's running total is followed, each group's total is kept."""
+    by_group: dict[int, list[tuple[int, int]]] = {}
+    for (strain, group), column in flow.columns.fill.items():
+        by_group.setdefault(group, []).append((strain, column))
+    owed: dict[int, float] = {}
+    fixed: dict[int, float] = {}
+    for group in sorted(by_group, key=lambda g: (flow.groups[g].load_day, g)):
+        members = by_group[group]
+        total = floor(sum(max(0.0, float(values[c])) for _, c in members) + 1e-6)
+        goals = {}
+        for strain, column in members:
+            value = max(0.0, float(values[column]))
+            goals[column] = (value + owed.get(strain, 0.0) if value > WHOLE_TOLERANCE else 0.0, strain, value)
+        whole = {column: float(max(0, floor(goal + 1e-6))) for column, (goal, _, _) in goals.items()}
+        while sum(whole.values()) > total:
+            most = max((c for c in whole if whole[c] > 0), key=lambda c: (whole[c] - goals[c][0], c))
+            whole[most] -= 1
+        for column in sorted(goals, key=lambda c: (whole[c] - goals[c][0], c)):
+            if sum(whole.values()) < total and goals[column][2] > WHOLE_TOLERANCE:
+                whole[column] += 1
+        for column, (_, strain, value) in goals.items():
+            owed[strain] = owed.get(strain, 0.0) + value - whole[column]
+        fixed.update(whole)
+    return fixed
+
+
+def round_inoculations(flow: StockAndFlow, values: FloatArray, fills: dict[int, float]) -> dict[int, float]:
+    """Whole inoculations: the running total by strain, within what is cool and before what would spoil."""
+    fixed: dict[int, float] = {}
+    for strain in flow.active:
+        comes: dict[int, float] = {}
+        spoils: dict[int, float] = {}
+        for (s, group), column in flow.columns.fill.items():
+            if s == strain and fills[column]:
+                comes[flow.groups[group].first] = comes.get(flow.groups[group].first, 0.0) + fills[column]
+                spoils[flow.groups[group].last] = spoils.get(flow.groups[group].last, 0.0) + fills[column]
+        for lot in flow.problem.stock.cooled:
+            if lot.strain == strain and lot.last_day is not None:
+                comes[0] = comes.get(0, 0.0) + lot.lot.bags
+                spoils[lot.last_day] = spoils.get(lot.last_day, 0.0) + lot.lot.bags
+        planned = done = cool = due = 0.0
+        pools = flow.problem.colony_pools_for(strain)
+        carry = dict.fromkeys(pools, 0.0)
+        for day in range(flow.problem.days):
+            cool += comes.get(day, 0.0)
+            due += spoils.get(day, 0.0)
+            columns = {p: flow.columns.inoculate.get((strain, p, day)) for p in pools}
+            open_pools = {p: c for p, c in columns.items() if c is not None}
+            if not open_pools:
+                continue
+            share = {p: max(0.0, float(values[c])) for p, c in open_pools.items()}
+            planned += sum(share.values())
+            bags = max(floor(planned + 0.5), due) - done
+            bags = max(0.0, min(bags, cool - done))
+            done += bags
+            fixed.update(_split(open_pools, share, carry, bags))
+    return fixed
+
+
+def _split(columns: dict[int, int], share: dict[int, float], carry: dict[int, float], bags: float) -> dict[int, float]:
+    """Split whole bags over columns near their shares, carrying what each is owed."""
+    whole = dict.fromkeys(columns, 0.0)
+    for key in columns:
+        carry[key] = carry.get(key, 0.0) + share[key]
+    for _ in range(int(bags)):
+        best = max(columns, key=lambda key: (share[key] > WHOLE_TOLERANCE, carry[key] - whole[key], -columns[key]))
+        whole[best] += 1.0
+    for key in columns:
+        carry[key] -= whole[key]
+    return {columns[key]: value for key, value in whole.items()}
+
+
+def round_openings(flow: StockAndFlow, values: FloatArray) -> dict[int, float]:
+    """Whole moves of ready bags: running totals by strain for the cold, and by strain, pool and flushes for opening."""
+    fixed: dict[int, float] = {}
+    totals: dict[tuple[int, ...], tuple[float, float]] = {}
+
+    def follow(key: tuple[int, ...], column: int) -> None:
+        planned, done = totals.get(key, (0.0, 0.0))
+        planned += max(0.0, float(values[column]))
+        bags = max(0.0, floor(planned + 0.5) - done)
+        totals[key] = (planned, done + bags)
+        fixed[column] = float(bags)
+
+    for (strain, source, day), column in sorted(flow.columns.hold.items(), key=lambda item: (item[0][2], item[0])):
+        follow((0, strain, source), column)
+    by_day: dict[tuple[int, int], list[tuple[int, int, int]]] = {}
+    for (strain, pool, day, flushes), column in flow.columns.open.items():
+        by_day.setdefault((day, strain), []).append((pool, flushes, column))
+    owed: dict[int, dict[int, float]] = {}
+    for (_, strain), members in sorted(by_day.items()):
+        planned, done = totals.get((1, strain), (0.0, 0.0))
+        share = {k: max(0.0, float(values[column])) for k, (_, _, column) in enumerate(members)}
+        planned += sum(share.values())
+        bags = max(0.0, floor(planned + 0.5) - done)
+        totals[1, strain] = (planned, done + bags)
+        columns = {pool * 100 + flushes: column for pool, flushes, column in members}
+        shares = {pool * 100 + flushes: share[k] for k, (pool, flushes, _) in enumerate(members)}
+        fixed.update(_split(columns, shares, owed.setdefault(strain, {}), bags))
+    for index, lot in enumerate(flow.problem.stock.fruiting):
+        columns = {kept: column for (i, kept), column in flow.columns.keep.items() if i == index}
+        shares = {kept: max(0.0, float(values[column])) for kept, column in columns.items()}
+        fixed.update(_split(columns, shares, {}, float(lot.lot.bags)))
+    return fixed
