@@ -1,0 +1,102 @@
+"""The command ``bagweek``: registers the commands and turns every refusal into a sentence and an exit code.
+
+Exit codes: 0 done; 1 an answer with shortfalls or findings; 2 bad input or usage; 3 no plan within the limits of time;
+4 the record is damaged or locked; 130 stopped from the keyboard.
+"""
+
+from __future__ import annotations
+
+import os
+import sys
+from typing import Annotated
+
+import typer
+
+from scheduler.cli.check import check
+from scheduler.cli.heat import heat
+from scheduler.cli.new import new
+from scheduler.cli.plan import plan
+
+INTERRUPTED = 130
+
+app = typer.Typer(
+    name="bagweek",
+    help="Plans a bag mushroom farm week by week: bags, steam runs, rooms, hands and harvests, in money.",
+    no_args_is_help=True,
+    add_completion=False,
+    rich_markup_mode=None,
+    pretty_exceptions_enable=False,
+)
+
+
+def _show_version(value: bool) -> None:
+    if value:
+        from importlib.metadata import version
+
+        typer.echo(f"bagweek {version('bagweek')}")
+        raise typer.Exit
+
+
+@app.callback()
+def main(
+    version: Annotated[  # noqa: ARG001  (handled by its callback)
+        bool, typer.Option("--version", callback=_show_version, is_eager=True, help="Show the version and stop.")
+    ] = False,
+) -> None:
+    """Plan a bag mushroom farm week by week: bags, steam runs, rooms, hands and harvests, in money."""
+
+
+app.command("new")(new)
+app.command("check")(check)
+app.command("heat")(heat)
+app.command("plan")(plan)
+
+
+def run() -> None:
+    """Run the command line and end the process.
+
+    A search that was stopped may leave a solver thread behind, so the process ends without waiting for threads.
+    """
+    code = _run()
+    for stream in (sys.stdout, sys.stderr):
+        try:
+            stream.flush()
+        except (BrokenPipeError, ValueError):
+            code = code or 0
+    os._exit(code)
+
+
+def _run() -> int:
+    try:
+        result = app(standalone_mode=False)
+    except KeyboardInterrupt:
+        return INTERRUPTED
+    except BrokenPipeError:
+        return 0
+    except Exception as error:
+        return _refused(error)
+    return result if isinstance(result, int) else 0
+
+
+def _refused(error: Exception) -> int:
+    """Say what was refused in plain words; anything unforeseen is raised again."""
+    from click import ClickException
+    from click.exceptions import Abort, Exit
+
+    from scheduler.errors import BagweekError
+
+    if isinstance(error, Exit):
+        return error.exit_code
+    if isinstance(error, Abort):
+        return INTERRUPTED
+    if isinstance(error, ClickException):
+        typer.echo(f"bagweek: {error.format_message()}", err=True)
+        return 2
+    if isinstance(error, BagweekError):
+        typer.echo(str(error), err=True)
+        return error.exit_code
+    raise error
+
+
+if __name__ == "__main__":
+    run()
