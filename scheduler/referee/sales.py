@@ -1,0 +1,156 @@
+"""Sales: orders, freshness, the spot market, and what could not be avoided."""
+
+from __future__ import annotations
+
+from collections import defaultdict
+from datetime import date, timedelta
+
+from models.calendar import Week
+from models.farm import Strain
+from models.growth.colonisation import days_to_ready
+from scheduler.referee.case import Case
+
+
+def check_sales(case: Case) -> None:
+    """Hold deliveries against orders and against what was picked in time."""
+    _deliveries(case)
+    _fresh(case)
+    _spot(case)
+    _unavoidable(case)
+
+
+def _deliveries(case: Case) -> None:
+    wanted: dict[tuple[int, date], float] = {}
+    for index, order in enumerate(case.orders):
+        for week in case.plan.all_weeks:
+            day = order.day_in(week)
+            if day is not None:
+                wanted[index, day] = order.kg
+    seen: set[tuple[int, date]] = set()
+    for item in case.plan.deliveries:
+        key = (item.order, item.day)
+        where = f"order {item.order + 1} ({item.customer}) on {item.day}"
+        case.expect("deliver", where, key in wanted and key not in seen, item.day, "a delivery day of the order, once")
+        seen.add(key)
+        case.equal("deliver", f"{where}, ordered", item.ordered_kg, wanted.get(key, 0.0), "kg", 1e-6)
+        case.expect("deliver", where, -1e-9 <= item.kg <= item.ordered_kg + 1e-6, item.kg, f"0 to {item.ordered_kg:g}", "kg")
+        case.equal("deliver", f"{where}, short", item.short_kg, item.ordered_kg - item.kg, "kg", 1e-6)
+        if 0 <= item.order < len(case.orders):
+            order = case.orders[item.order]
+            same = (order.customer, order.strain) == (item.customer, item.strain)
+            case.expect("deliver", where, same, (item.customer, item.strain), (order.customer, order.strain))
+        ok = -1e-9 <= item.unavoidable_kg <= item.short_kg + 1e-6
+        case.expect("unavoidable", where, ok, item.unavoidable_kg, f"0 to {item.short_kg:g}", "kg")
+    case.expect("deliver", "deliveries", len(seen) == len(wanted), len(seen), f"all {len(wanted)} order days")
+
+
+def _fresh(case: Case) -> None:
+    """By strain, running totals: nothing sold before it is picked, nothing left when it is past its life."""
+    picked: dict[str, dict[date, float]] = defaultdict(lambda: defaultdict(float))
+    out: dict[str, dict[date, float]] = defaultdict(lambda: defaultdict(float))
+    for opening in case.plan.openings:
+        for pick in opening.picks:
+            picked[case.lots[opening.lot].strain][pick.day] += pick.kg
+    for item in case.plan.deliveries:
+        out[item.strain][item.day] += item.kg
+    for sale in case.plan.surplus:
+        ok = min(sale.spot_kg, sale.spoiled_kg) >= -1e-9 and case.inside(sale.day)
+        case.expect("freshness", f"{sale.strain} on {sale.day}", ok, (sale.spot_kg, sale.spoiled_kg), "kilograms, in the plan")
+        out[sale.strain][sale.day] += sale.spot_kg + sale.spoiled_kg
+    for code in {*picked, *out}:
+        life = case.farm.strain_called(code).shelf_life_days
+        sold = grown = 0.0
+        stale: list[float] = []
+        for offset in range(case.days):
+            day = case.first + timedelta(days=offset)
+            grown += picked[code][day]
+            sold += out[code][day]
+            stale.append(grown)
+            case.at_most("freshness", f"{code} sold by {day}", sold, grown, "kg")
+            if offset >= life:
+                old = stale[offset - life]
+                ok = sold >= old - max(0.005, 1e-6 * old)
+                case.expect("freshness", f"{code} gone by {day}", ok, f"{sold:g}", f"at least {old:g}", "kg")
+
+
+def _spot(case: Case) -> None:
+    weeks: dict[Week, float] = defaultdict(float)
+    for sale in case.plan.surplus:
+        weeks[Week.of(sale.day)] += sale.spot_kg
+    for week, kg in weeks.items():
+        case.at_most("spot", str(week), kg, case.farm.market.spot_kg_week, "kg")
+
+
+def _unavoidable(case: Case) -> None:
+    """No more is called unavoidable than the orders pass all that could be ripe by then."""
+    for strain in case.farm.strain:
+        items = [item for item in case.plan.deliveries if item.strain == strain.code]
+        if not any(item.unavoidable_kg > 1e-9 for item in items):
+            continue
+        first = _first_ripe(case, strain)
+        supply = _stock_supply(case, strain)
+        ordered = lost = 0.0
+        for item in sorted(items, key=lambda i: (i.day, i.order)):
+            where = f"{strain.code} by {item.day}"
+            if item.day >= first:
+                case.at_most("unavoidable", where, item.unavoidable_kg, 0.0, "kg")
+                continue
+            ordered += item.ordered_kg
+            lost += item.unavoidable_kg
+            could = sum(kg for day, kg in supply if day <= item.day)
+            # The earliest orders may be served first or last: the total by a day is what is bounded.
+            case.at_most("unavoidable", where, lost, max(ordered - could, lost if could <= 0 else 0.0, _peak(items, supply, item.day)), "kg")
+
+
+def _peak(items: list, supply: list[tuple[date, float]], until: date) -> float:  # type: ignore[type-arg]
+    """Kilograms short by a day when every order takes what is ripe as it comes."""
+    given = short = 0.0
+    for item in sorted(items, key=lambda i: (i.day, i.order)):
+        if item.day > until:
+            break
+        ripe = sum(kg for day, kg in supply if day <= item.day)
+        served = min(item.ordered_kg, max(0.0, ripe - given))
+        given += served
+        short += item.ordered_kg - served
+    return short
+
+
+def _first_ripe(case: Case, strain: Strain) -> date:
+    """A day before which no new bag can be ripe: inoculated on the first day there is, in the quickest room."""
+    rooms = [r for r in case.farm.rooms_of("colonisation") if strain.t_min_c < r.temp_c < strain.t_max_c]
+    if not rooms:
+        return case.last + timedelta(days=1)
+    quickest = min(days_to_ready(strain, room.temp_c) for room in rooms)
+    earliest = min(
+        (case.local(run.cooled).date() for run in case.plan.runs), default=case.first + timedelta(days=1)
+    )
+    del earliest  # A run of the plan may not be the earliest that could be; the first day of the plan is the bound.
+    opened = case.next_working(case.first + timedelta(days=quickest), "open")
+    return case.next_working(opened + timedelta(days=strain.pin_days), "pick")
+
+
+def _stock_supply(case: Case, strain: Strain) -> list[tuple[date, float]]:
+    """Everything the opening stock could give, from the first day it could."""
+    kg = case.flush_kg(strain)
+    found: list[tuple[date, float]] = []
+    for row in case.stock:
+        if row.strain != strain.code:
+            continue
+        start = max(case.first, row.since)
+        if row.stage == "fruiting":
+            start = case.first
+        elif row.stage in ("ready", "cold-held"):
+            start = case.next_working(start, "open") + timedelta(days=strain.pin_days)
+        else:
+            rooms = [r for r in case.farm.rooms_of("colonisation") if strain.t_min_c < r.temp_c < strain.t_max_c]
+            days = min((days_to_ready(strain, room.temp_c) for room in rooms), default=0)
+            ready = max(case.first, row.since + timedelta(days=days)) if row.stage == "colonising" else case.first
+            if row.stage == "cooled":
+                ready = case.first + timedelta(days=days)
+            start = case.next_working(ready, "open") + timedelta(days=strain.pin_days)
+        picked = row.flushes_picked or 0
+        left = kg[picked:] if row.stage == "fruiting" else kg
+        for flush, share in enumerate(left):
+            day = start + timedelta(days=strain.rest_days * flush)
+            found.append((day, row.bags * share))
+    return found
