@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 from collections import defaultdict
+from collections.abc import Sequence
 from datetime import date, timedelta
 
 from models.calendar import Week
 from models.farm import Strain
 from models.growth.colonisation import days_to_ready
+from models.plan import Delivery
 from scheduler.referee.case import Case
+from scheduler.referee.earliest import earliest_inoculation
 
 
 def check_sales(case: Case) -> None:
@@ -89,20 +92,17 @@ def _unavoidable(case: Case) -> None:
             continue
         first = _first_ripe(case, strain)
         supply = _stock_supply(case, strain)
-        ordered = lost = 0.0
+        lost = 0.0
         for item in sorted(items, key=lambda i: (i.day, i.order)):
             where = f"{strain.code} by {item.day}"
             if item.day >= first:
                 case.at_most("unavoidable", where, item.unavoidable_kg, 0.0, "kg")
                 continue
-            ordered += item.ordered_kg
             lost += item.unavoidable_kg
-            could = sum(kg for day, kg in supply if day <= item.day)
-            # The earliest orders may be served first or last: the total by a day is what is bounded.
-            case.at_most("unavoidable", where, lost, max(ordered - could, lost if could <= 0 else 0.0, _peak(items, supply, item.day)), "kg")
+            case.at_most("unavoidable", where, lost, _peak(items, supply, item.day), "kg")
 
 
-def _peak(items: list, supply: list[tuple[date, float]], until: date) -> float:  # type: ignore[type-arg]
+def _peak(items: Sequence[Delivery], supply: Sequence[tuple[date, float]], until: date) -> float:
     """Kilograms short by a day when every order takes what is ripe as it comes."""
     given = short = 0.0
     for item in sorted(items, key=lambda i: (i.day, i.order)):
@@ -116,16 +116,13 @@ def _peak(items: list, supply: list[tuple[date, float]], until: date) -> float: 
 
 
 def _first_ripe(case: Case, strain: Strain) -> date:
-    """A day before which no new bag can be ripe: inoculated on the first day there is, in the quickest room."""
+    """A day before which no new bag can be ripe: the earliest run there can be, in the quickest room."""
     rooms = [r for r in case.farm.rooms_of("colonisation") if strain.t_min_c < r.temp_c < strain.t_max_c]
-    if not rooms:
+    inoculated = earliest_inoculation(case, strain)
+    if not rooms or inoculated is None:
         return case.last + timedelta(days=1)
     quickest = min(days_to_ready(strain, room.temp_c) for room in rooms)
-    earliest = min(
-        (case.local(run.cooled).date() for run in case.plan.runs), default=case.first + timedelta(days=1)
-    )
-    del earliest  # A run of the plan may not be the earliest that could be; the first day of the plan is the bound.
-    opened = case.next_working(case.first + timedelta(days=quickest), "open")
+    opened = case.next_working(inoculated + timedelta(days=quickest), "open")
     return case.next_working(opened + timedelta(days=strain.pin_days), "pick")
 
 
