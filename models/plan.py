@@ -208,7 +208,7 @@ class Account:
     @property
     def total(self) -> float:
         """Sum of all lines [currency]."""
-        return sum(getattr(self, line) for line in MONEY_LINES)
+        return float(sum(getattr(self, line) for line in MONEY_LINES))
 
 
 @dataclass(frozen=True, slots=True)

@@ -68,14 +68,19 @@ def weekly(farm: Farm, orders: Sequence[Order], plan: Plan, clock: FarmClock) ->
     """
     rows = {week: WeekRow(week, {s.code: 0 for s in farm.strain}, {s.code: 0.0 for s in farm.strain})
             for week in plan.all_weeks}  # fmt: skip
+    _add_making(farm, plan, clock, rows)
+    _add_selling(farm, orders, plan, rows)
+    for code, nights in room_nights(farm, plan, clock).items():
+        for index, week in enumerate(plan.all_weeks):
+            rows[week].room_peak[code] = max(nights[7 * index : 7 * index + 7], default=0)
+    return tuple(rows[week] for week in plan.all_weeks)
+
+
+def _add_making(farm: Farm, plan: Plan, clock: FarmClock, rows: dict[Week, WeekRow]) -> None:
+    """Runs, bags, spawn and hours, each on its own day."""
     strain_of = {lot.code: lot.strain for lot in plan.lots}
-    market = farm.market
-
-    def row(day: date) -> WeekRow:
-        return rows[Week.of(day)]
-
     for run in plan.runs:
-        here = row(clock.at(run.load_start).date())
+        here = rows[Week.of(clock.at(run.load_start).date())]
         here.runs += 1
         here.money -= run.energy_cost
         for code, bags in run.bags.items():
@@ -87,14 +92,27 @@ def weekly(farm: Farm, orders: Sequence[Order], plan: Plan, clock: FarmClock) ->
         if not event.before:
             strain = farm.strain_called(strain_of[event.lot])
             kg = event.bags * farm.bag_of(strain).wet_kg * strain.spawn_rate_pct / 100
-            row(event.day).money -= kg * strain.spawn_cost_per_kg
+            rows[Week.of(event.day)].money -= kg * strain.spawn_cost_per_kg
+    wages = {crew.code: crew.cost_per_h for crew in farm.crew}
+    for work in plan.labour:
+        here = rows[Week.of(work.day)]
+        here.labour_h += work.hours
+        here.money -= work.hours * wages[work.crew]
+    for short in plan.shortfalls:
+        rows[Week.of(short.day)].money -= short.amount * (1000.0 if short.unit == "h" else 100.0)
+
+
+def _add_selling(farm: Farm, orders: Sequence[Order], plan: Plan, rows: dict[Week, WeekRow]) -> None:
+    """Picks, deliveries and the spot market, each on its own day."""
+    strain_of = {lot.code: lot.strain for lot in plan.lots}
+    market = farm.market
     for opening in plan.openings:
         for pick in opening.picks:
-            here = row(pick.day)
+            here = rows[Week.of(pick.day)]
             here.kg[strain_of[opening.lot]] += pick.kg
             here.money -= (pick.ripe_kg - pick.kg) * market.spoilage_per_kg
     for item in plan.deliveries:
-        here = row(item.day)
+        here = rows[Week.of(item.day)]
         here.orders_kg += item.ordered_kg
         here.short_kg += item.short_kg
         here.unavoidable_kg += item.unavoidable_kg
@@ -103,18 +121,7 @@ def weekly(farm: Farm, orders: Sequence[Order], plan: Plan, clock: FarmClock) ->
         here.money -= (item.short_kg - item.unavoidable_kg) * market.shortage_per_kg / order.priority
     prices = spot_prices(farm, orders)
     for sale in plan.surplus:
-        row(sale.day).money += sale.spot_kg * prices[sale.strain] - sale.spoiled_kg * market.spoilage_per_kg
-    wages = {crew.code: crew.cost_per_h for crew in farm.crew}
-    for work in plan.labour:
-        here = row(work.day)
-        here.labour_h += work.hours
-        here.money -= work.hours * wages[work.crew]
-    for short in plan.shortfalls:
-        row(short.day).money -= short.amount * (1000.0 if short.unit == "h" else 100.0)
-    for code, nights in room_nights(farm, plan, clock).items():
-        for index, week in enumerate(plan.all_weeks):
-            rows[week].room_peak[code] = max(nights[7 * index : 7 * index + 7], default=0)
-    return tuple(rows[week] for week in plan.all_weeks)
+        rows[Week.of(sale.day)].money += sale.spot_kg * prices[sale.strain] - sale.spoiled_kg * market.spoilage_per_kg
 
 
 def room_nights(farm: Farm, plan: Plan, clock: FarmClock) -> dict[str, list[int]]:

@@ -39,7 +39,7 @@ def _show_version(value: bool) -> None:
 
 @app.callback()
 def main(
-    version: Annotated[  # noqa: ARG001  (handled by its callback)
+    version: Annotated[
         bool, typer.Option("--version", callback=_show_version, is_eager=True, help="Show the version and stop.")
     ] = False,
 ) -> None:
@@ -73,7 +73,7 @@ def _run() -> int:
         return INTERRUPTED
     except BrokenPipeError:
         return 0
-    except Exception as error:
+    except Exception as error:  # noqa: BLE001  (the one place that turns refusals into words; others are raised again)
         return _refused(error)
     return result if isinstance(result, int) else 0
 

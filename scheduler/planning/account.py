@@ -32,8 +32,7 @@ def picked_openings(
 ) -> tuple[Opening, ...]:
     """Openings with the kilograms that are picked of each flush: by strain and day, the planned total, in order."""
     left = {
-        key: max(0.0, float(sum(values[column] for column in members)))
-        for key, members in flow.columns.picked.items()
+        key: max(0.0, float(sum(values[column] for column in members))) for key, members in flow.columns.picked.items()
     }
     codes = {strain.code: k for k, strain in enumerate(flow.problem.strains)}
     opened = []

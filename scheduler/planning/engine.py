@@ -114,9 +114,7 @@ def branch(
             if match and listener is not None:
                 listener(float(match["best"]), float(match["bound"]))
 
-    result = _in_thread(
-        lambda: mathopt.solve(model, mathopt.SolverType.HIGHS, params=parameters, msg_cb=hear)
-    )
+    result = _in_thread(lambda: mathopt.solve(model, mathopt.SolverType.HIGHS, params=parameters, msg_cb=hear))
     bound = result.termination.objective_bounds.dual_bound
     if not result.has_primal_feasible_solution():
         return Answer(None, nan, bound, _stop_reason(result))
@@ -133,7 +131,7 @@ def _stop_reason(result: Any) -> str:
         return "gap reached"
     limit = termination.limit
     names = {mathopt.Limit.TIME: "time limit", mathopt.Limit.NODE: "node limit"}
-    return names.get(limit, termination.reason.name.lower().replace("_", " "))
+    return names.get(limit, str(termination.reason.name).lower().replace("_", " "))
 
 
 def _in_thread(solve: Callable[[], Any]) -> Any:

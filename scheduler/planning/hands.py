@@ -60,9 +60,9 @@ def add_hands(flow: StockAndFlow) -> None:
             benches = problem.shifts.bench_hours(day)
             if benches is not None:
                 flow.hour_rows.append((matrix.row("benches", day, terms, high=benches), benches))
-    for crew in problem.farm.crew:
+    for team in problem.farm.crew:
         for day in range(problem.days):
-            terms = worked.get((crew.code, day), [])
+            terms = worked.get((team.code, day), [])
             if terms:
-                shift = next(s for skill in SKILLS for s in problem.shifts.on(day, skill) if s.crew is crew)
-                flow.hour_rows.append((matrix.row(f"shift {crew.code}", day, terms, high=shift.hours), shift.hours))
+                shift = next(s for skill in SKILLS for s in problem.shifts.on(day, skill) if s.crew is team)
+                flow.hour_rows.append((matrix.row(f"shift {team.code}", day, terms, high=shift.hours), shift.hours))

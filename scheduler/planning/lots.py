@@ -101,7 +101,8 @@ def _filled_runs(flow: StockAndFlow, values: FloatArray) -> list[tuple[Arc, dict
         runs = sorted(by_group.get(group, ()), key=lambda arc: (-arc.bags, arc.load_start, arc.steriliser))
         rest = sorted(wanted)
         for arc in runs:
-            room, load = arc.bags, {}
+            room = arc.bags
+            load: dict[int, int] = {}
             while rest and room:
                 strain, bags = rest[0]
                 taken = min(bags, room)
@@ -161,9 +162,7 @@ def _number_runs(flow: StockAndFlow, made: Made, waiting: dict[int, list[_Cooled
     made.runs = numbered
 
 
-def _inoculate(
-    flow: StockAndFlow, values: FloatArray, made: Made, waiting: dict[int, list[_Cooled]]
-) -> None:
+def _inoculate(flow: StockAndFlow, values: FloatArray, made: Made, waiting: dict[int, list[_Cooled]]) -> None:
     by_strain: dict[int, list[tuple[int, int, int]]] = {}
     for (strain, pool, day), column in flow.columns.inoculate.items():
         bags = round(values[column])
@@ -197,15 +196,29 @@ def _take(
 
 def _ready_stock(flow: StockAndFlow, made: Made) -> None:
     for item in flow.problem.stock.ready:
-        pool = flow.cold if item.held else next(
-            k for k, p in enumerate(flow.problem.colony_pools) if item.room.code in {room.code for room in p.rooms}
-        )  # fmt: skip
+        pool = (
+            flow.cold
+            if item.held
+            else next(
+                k for k, p in enumerate(flow.problem.colony_pools) if item.room.code in {room.code for room in p.rooms}
+            )
+        )
         since = (item.lot.since - flow.problem.clock.first_day).days
         made.batches.append(
             Batch(
-                item.lot.lot, item.strain, pool, since, item.ready, item.arrival, item.deadline, item.lot.bags,
-                item.loss_pct, before=True, held=item.held, room=item.room.code,
-            )  # fmt: skip
+                item.lot.lot,
+                item.strain,
+                pool,
+                since,
+                item.ready,
+                item.arrival,
+                item.deadline,
+                item.lot.bags,
+                item.loss_pct,
+                before=True,
+                held=item.held,
+                room=item.room.code,
+            )
         )
 
 

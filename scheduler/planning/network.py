@@ -16,8 +16,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from models.farm import Bag, Farm, Programme, Recipe, Steriliser, clock_minutes
-from models.thermal.table import CycleRow, cycle_row
 from models.thermal.errors import ThermalError
+from models.thermal.table import CycleRow, cycle_row
 from scheduler.planning.shifts import Shifts
 
 FINE_GRID_MIN = 60
@@ -151,7 +151,9 @@ class RunNetwork:
         numbers = []
         shapes = [self._shape(day) for day in range(self.shifts.days)]
         for day in range(self.shifts.days):
-            steps = tuple(self._midnight[k] - self._midnight[day] for k in range(day, min(day + ahead, self.shifts.days)))
+            steps = tuple(
+                self._midnight[k] - self._midnight[day] for k in range(day, min(day + ahead, self.shifts.days))
+            )
             key = (steps, tuple(shapes[day : day + ahead]))
             numbers.append(known.setdefault(key, len(known)))
         return numbers

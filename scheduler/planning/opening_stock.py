@@ -41,7 +41,7 @@ class ReadyStock:
 
 @dataclass(frozen=True, slots=True)
 class FruitingStock:
-    """Opened bags; ``flush_days[k]`` and ``flush_kg[k]`` are the day index and kg a bag of the flushes still to come."""
+    """Opened bags; ``flush_days`` and ``flush_kg`` are day index and kg a bag of the flushes still to come."""
 
     lot: StockLot
     strain: int

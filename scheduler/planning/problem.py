@@ -140,9 +140,7 @@ def longest_life_days(farm: Farm, orders: Sequence[Order]) -> int:
     return max(lives)
 
 
-def order_days_of(
-    farm: Farm, orders: Sequence[Order], weeks: Sequence[Week], first_day: date
-) -> tuple[OrderDay, ...]:
+def order_days_of(farm: Farm, orders: Sequence[Order], weeks: Sequence[Week], first_day: date) -> tuple[OrderDay, ...]:
     """Every delivery that the order book asks for in these weeks."""
     index = {strain.code: k for k, strain in enumerate(farm.strain)}
     found = []
@@ -153,9 +151,14 @@ def order_days_of(
                 penalty = farm.market.shortage_per_kg / order.priority
                 found.append(
                     OrderDay(
-                        row, index[order.strain], (day - first_day).days, order.kg, order.price_per_kg, penalty,
+                        row,
+                        index[order.strain],
+                        (day - first_day).days,
+                        order.kg,
+                        order.price_per_kg,
+                        penalty,
                         order.priority,
-                    )  # fmt: skip
+                    )
                 )
     return tuple(sorted(found, key=lambda item: (item.day, item.strain, item.priority, item.order)))
 

@@ -107,9 +107,14 @@ class House:
                 self._put(batch, batch.room, held=batch.inoculated)
             else:
                 event = Inoculation(
-                    batch.lot, self._date(batch.inoculated), batch.room, batch.bags, self._date(batch.ready), batch.lost,
+                    batch.lot,
+                    self._date(batch.inoculated),
+                    batch.room,
+                    batch.bags,
+                    self._date(batch.ready),
+                    batch.lost,
                     before=True,
-                )  # fmt: skip
+                )
                 self.housed.inoculations.append(event)
                 self._comes_ready.setdefault(batch.arrival, []).append((batch, batch.room, batch.bags))
         for lot in self.problem.stock.fruiting:
@@ -131,9 +136,18 @@ class House:
             )
             self.housed.openings.append(
                 Opening(
-                    lot.lot.lot, lot.lot.since, "", lot.lot.since, None, lot.room.code, bags, flushes,
-                    self._date(leave), picks, before=True,
-                )  # fmt: skip
+                    lot.lot.lot,
+                    lot.lot.since,
+                    "",
+                    lot.lot.since,
+                    None,
+                    lot.room.code,
+                    bags,
+                    flushes,
+                    self._date(leave),
+                    picks,
+                    before=True,
+                )
             )
             self._frees.setdefault(leave + clean[lot.room.code], []).append((lot.room.code, bags))
 
@@ -267,9 +281,17 @@ class House:
             picks = tuple(FlushPick(self._date(d), k + 1, part * kg[k], 0.0) for k, d in enumerate(days))
             self.housed.openings.append(
                 Opening(
-                    item.lot, self._date(day), item.room, self._date(item.ready),
-                    None if item.held is None else self._date(item.held), room, part, flushes, self._date(leave), picks,
-                )  # fmt: skip
+                    item.lot,
+                    self._date(day),
+                    item.room,
+                    self._date(item.ready),
+                    None if item.held is None else self._date(item.held),
+                    room,
+                    part,
+                    flushes,
+                    self._date(leave),
+                    picks,
+                )
             )
             self.standing[room] += part
             self._frees.setdefault(leave + rooms.clean_days, []).append((room, part))

@@ -99,9 +99,7 @@ class Shifts:
     def inoculation_hours_left(self, day: int, moment: int) -> float:
         """Person-hours of inoculation on a day after a moment, as crews and benches allow [h]."""
         shifts = self.on(day, "inoculate")
-        people_hours = sum(
-            max(0, shift.end - max(shift.start, moment)) * shift.crew.people / 60 for shift in shifts
-        )
+        people_hours = sum(max(0, shift.end - max(shift.start, moment)) * shift.crew.people / 60 for shift in shifts)
         benches = self.farm.limits.inoculation_benches
         if benches is None or not shifts:
             return people_hours

@@ -28,7 +28,6 @@ from scheduler.planning.engine import SEED, Answer, FloatArray, Relaxation, bran
 from scheduler.planning.lots import Made, make_lots
 from scheduler.planning.problem import Problem, state_problem
 from scheduler.planning.rooms import House
-from scheduler.planning.stock_and_flow import StockAndFlow
 from scheduler.planning.supply import Supply, relax_within_supply
 from scheduler.planning.whole import bounds_of, run_candidates, whole_bags
 
@@ -60,7 +59,7 @@ class _Search:
 
 
 def gap_of(bound: float, objective: float, sales: float) -> float:
-    """Relative gap (bound - objective) / max(\\|bound\\|, sales), 0 where nothing is at stake [-]."""
+    """Relative gap (bound - objective) / max(abs(bound), sales), 0 where nothing is at stake [-]."""
     scale = max(abs(bound), sales)
     return max(0.0, bound - objective) / scale if scale > 0 else 0.0
 

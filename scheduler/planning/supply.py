@@ -36,7 +36,8 @@ class Supply:
         return [
             slot
             for slot, terms in self._draw.items()
-            if slot not in self._rows and sum(values[column] * kw for column, kw in terms) > self.spare_kw + TOLERANCE_KW
+            if slot not in self._rows
+            and sum(values[column] * kw for column, kw in terms) > self.spare_kw + TOLERANCE_KW
         ]
 
     def add(self, slots: list[int]) -> None:

@@ -42,5 +42,7 @@ def referee(farm: Farm, orders: Sequence[Order], stock: Sequence[StockLot], plan
             check(case)
         except (KeyError, IndexError, ValueError, TypeError, AttributeError) as error:
             # The plan names something that does not exist; what it is stands in the error.
-            case.fail("malformed", check.__name__.removeprefix("check_"), f"{type(error).__name__}: {error}", "a sound plan")
+            case.fail(
+                "malformed", check.__name__.removeprefix("check_"), f"{type(error).__name__}: {error}", "a sound plan"
+            )
     return case.verdict()

@@ -26,9 +26,13 @@ def check_bags(case: Case) -> None:
 
 def _whole(case: Case) -> None:
     plan = case.plan
-    for event in (*plan.inoculations, *plan.holdings, *plan.openings, *plan.discards):
-        ok = isinstance(event.bags, int) and event.bags > 0
-        case.expect("bags", f"{event.lot} on {event.day}", ok, event.bags, "a whole number above zero", "bags")
+    counts = [(event.lot, event.day, event.bags) for event in plan.inoculations]
+    counts += [(event.lot, event.day, event.bags) for event in plan.holdings]
+    counts += [(event.lot, event.day, event.bags) for event in plan.openings]
+    counts += [(event.lot, event.day, event.bags) for event in plan.discards]
+    for lot, day, bags in counts:
+        ok = isinstance(bags, int) and bags > 0
+        case.expect("bags", f"{lot} on {day}", ok, bags, "a whole number above zero", "bags")
     for event in plan.inoculations:
         ok = isinstance(event.lost, int) and 0 <= event.lost <= event.bags
         case.expect("lost", f"{event.lot} on {event.day}", ok, event.lost, f"0 to {event.bags}", "bags")
@@ -69,7 +73,7 @@ def _inoculation_window(case: Case, lot: str) -> tuple[date, date]:
     limits, rates = case.farm.limits, case.farm.rates
     code = case.lots[lot].run
     if code:
-        run = next(r for r in case.plan.runs if r.code == code)
+        run = case.runs[code]
         cooled = run.cooled
         first = case.local(cooled).date()
         step = max(1, round(run.load_step * case.farm.steriliser_called(run.steriliser).places))
@@ -131,37 +135,29 @@ def _ready(case: Case) -> None:
     for event in plan.inoculations:
         come[event.lot, event.room, event.ready_day] += event.bags - event.lost
     gone: dict[Place, int] = defaultdict(int)
-    held: dict[tuple[str, str, date], int] = defaultdict(int)
-    released: dict[tuple[str, str, date], int] = defaultdict(int)
+    held: dict[Place, int] = defaultdict(int)
+    released: dict[Place, int] = defaultdict(int)
     for holding in plan.holdings:
         held[holding.lot, holding.room, holding.day] += holding.bags
         if not holding.before:
-            _leaves(case, gone, holding.lot, holding.from_room, holding.ready_day, holding.day, holding.bags, opens=True)
+            _leaves(
+                case, gone, holding.lot, holding.from_room, holding.ready_day, holding.day, holding.bags, opens=True
+            )
             kind = case.farm.room_called(holding.room).kind
             case.expect("cold-hold", holding.lot, kind == "cold-hold", kind, "a cold-hold room")
     for opening in plan.openings:
         if opening.before:
             continue
         if opening.held_day is None:
-            _leaves(case, gone, opening.lot, opening.from_room, opening.ready_day, opening.day, opening.bags, opens=True)
+            _leaves(
+                case, gone, opening.lot, opening.from_room, opening.ready_day, opening.day, opening.bags, opens=True
+            )
         else:
             released[opening.lot, opening.from_room, opening.held_day] += opening.bags
             _cold(case, opening.lot, opening.held_day, opening.day)
             works = case.works(opening.day, "open")
             case.expect("cold-hold", opening.lot, works, opening.day, "a day with an open shift")
-    for discard in plan.discards:
-        if not discard.room or discard.ready_day is None:
-            continue
-        if case.farm.room_called(discard.room).kind == "cold-hold":
-            keys = [key for key in held if key[0] == discard.lot and key[1] == discard.room and key[2] <= discard.day]
-            left = discard.bags
-            for key in sorted(keys, key=lambda k: k[2]):
-                part = min(left, held[key] - released[key])
-                released[key] += part
-                left -= part
-            case.expect("bags", discard.lot, left == 0, discard.bags, "bags that are in the cold")
-        else:
-            _leaves(case, gone, discard.lot, discard.room, discard.ready_day, discard.day, discard.bags, opens=False)
+    _unopened(case, gone, held, released)
     for key in {**come, **gone}:
         lot, room, ready = key
         deadline = _deadline(case, lot, ready)
@@ -173,6 +169,23 @@ def _ready(case: Case) -> None:
         stays = day + timedelta(days=case.strain_of(lot).cold_hold_days) > case.last
         ok = released[where] == bags or (stays and released[where] < bags)
         case.expect("bags", f"{lot} in {room}", ok, released[where], f"{bags} held bags that leave", "bags")
+
+
+def _unopened(case: Case, gone: dict[Place, int], held: dict[Place, int], released: dict[Place, int]) -> None:
+    """Ready and cold bags that are thrown away."""
+    for discard in case.plan.discards:
+        if not discard.room or discard.ready_day is None:
+            continue
+        if case.farm.room_called(discard.room).kind != "cold-hold":
+            _leaves(case, gone, discard.lot, discard.room, discard.ready_day, discard.day, discard.bags, opens=False)
+            continue
+        keys = [key for key in held if key[0] == discard.lot and key[1] == discard.room and key[2] <= discard.day]
+        left = discard.bags
+        for key in sorted(keys, key=lambda k: k[2]):
+            part = min(left, held[key] - released[key])
+            released[key] += part
+            left -= part
+        case.expect("bags", discard.lot, left == 0, discard.bags, "bags that are in the cold")
 
 
 def _deadline(case: Case, lot: str, ready: date) -> date:
@@ -209,7 +222,9 @@ def _stock(case: Case) -> None:
             row = case.stock_lots[event.lot]
             ready = row.since
             if row.stage == "colonising":
-                ready += timedelta(days=days_to_ready(case.strain_of(event.lot), case.farm.room_called(event.room).temp_c))
+                ready += timedelta(
+                    days=days_to_ready(case.strain_of(event.lot), case.farm.room_called(event.room).temp_c)
+                )
             case.expect("stock", event.lot, event.ready_day == ready, event.ready_day, ready)
             case.expect("stock", event.lot, not row.room or row.room == event.room, event.room, row.room)
     for holding in case.plan.holdings:
@@ -233,7 +248,7 @@ def _opening(case: Case, opening: Opening) -> None:
     count = len(strain.flush_share)
     if opening.before:
         row = case.stock_lots[opening.lot]
-        days = _stock_flush_days(case, strain, row)
+        days = stock_flush_days(case, strain, row)
         picked = count - len(days)
         case.expect("flush-days", where, picked <= opening.flushes <= count, opening.flushes, f"{picked} to {count}")
     else:
@@ -250,7 +265,9 @@ def _opening(case: Case, opening: Opening) -> None:
     case.expect("flush-days", where, found == right, found, right)
     for pick in opening.picks:
         if 1 <= pick.flush <= count:
-            case.equal("kg", f"{where}, flush {pick.flush}", pick.ripe_kg, opening.bags * kg[pick.flush - 1], "kg", 1e-6)
+            case.equal(
+                "kg", f"{where}, flush {pick.flush}", pick.ripe_kg, opening.bags * kg[pick.flush - 1], "kg", 1e-6
+            )
         case.expect("kg", where, -1e-9 <= pick.kg <= pick.ripe_kg + 1e-6, pick.kg, f"0 to {pick.ripe_kg:g}", "kg")
         if pick.kg > 1e-9:
             case.expect("pick-day", where, case.works(pick.day, "pick"), pick.day, "a day with a pick shift")
@@ -258,7 +275,8 @@ def _opening(case: Case, opening: Opening) -> None:
     case.expect("flush-days", f"{where}, leaving", opening.leave_day == leave, opening.leave_day, leave)
 
 
-def _stock_flush_days(case: Case, strain: Strain, row: StockLot) -> list[date]:
+def stock_flush_days(case: Case, strain: Strain, row: StockLot) -> list[date]:
+    """Days of the flushes still to come of a fruiting stock lot."""
     count = len(strain.flush_share)
     days = [row.since + timedelta(days=strain.pin_days + k * strain.rest_days) for k in range(count)]
     picked = row.flushes_picked

@@ -8,7 +8,7 @@ from zoneinfo import ZoneInfo
 
 from models.calendar import Week
 from models.farm import Crew, Farm, Order, StockLot, Strain
-from models.plan import Lot, Plan
+from models.plan import Lot, Plan, Run
 from scheduler.referee.verdict import Verdict, Violation
 
 TOLERANCE = 1e-6
@@ -110,6 +110,11 @@ class Case:
     def lots(self) -> dict[str, Lot]:
         """Lots by code."""
         return {lot.code: lot for lot in self.plan.lots}
+
+    @cached_property
+    def runs(self) -> dict[str, Run]:
+        """Runs by code."""
+        return {run.code: run for run in self.plan.runs}
 
     @cached_property
     def stock_lots(self) -> dict[str, StockLot]:

@@ -46,7 +46,8 @@ def _earliest(case: Case, strain: Strain, programme: Programme, steriliser: Ster
             return None
         mixed = min(start + ceil(60 * bags / (rates.mix_bags_h * c.people) - 1e-9) for c, start, _ in mixers)
         starts = [
-            (max(mixed, start) + ceil(60 * bags / (rates.load_bags_h * c.people) - 1e-9), end) for c, start, end in loaders
+            (max(mixed, start) + ceil(60 * bags / (rates.load_bags_h * c.people) - 1e-9), end)
+            for c, start, end in loaders
         ]
         on = min((steam for steam, end in starts if steam <= end), default=None)
         if on is None:

@@ -28,7 +28,9 @@ def check_places(case: Case) -> None:
                 case.equal("places", f"{room.code} on {day}, shortfall", over, standing - room.places, "bags", 1e-6)
             case.expect("places", f"{room.code} on {day}", standing >= 0, standing, "at least 0", "bags")
     for (code, day), amount in listed.items():
-        case.fail("places", f"{code} on {day}", f"a shortfall of {amount:g}", "shortfalls of rooms and days of the plan")
+        case.fail(
+            "places", f"{code} on {day}", f"a shortfall of {amount:g}", "shortfalls of rooms and days of the plan"
+        )
     _cooling(case)
 
 

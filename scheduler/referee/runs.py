@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections import defaultdict
 from datetime import timedelta
+from itertools import pairwise
 from math import ceil
 
 from models.farm import clock_minutes
@@ -31,7 +32,9 @@ def check_runs(case: Case) -> None:
 def _load(case: Case, run: Run) -> None:
     steriliser = case.farm.steriliser_called(run.steriliser)
     bags = sum(run.bags.values())
-    case.expect("run-load", run.code, all(isinstance(n, int) and n > 0 for n in run.bags.values()), run.bags, "whole bags")
+    case.expect(
+        "run-load", run.code, all(isinstance(n, int) and n > 0 for n in run.bags.values()), run.bags, "whole bags"
+    )
     case.expect("run-load", run.code, run.load_step in steriliser.loads, run.load_step, f"one of {steriliser.loads}")
     step = max(1, round(run.load_step * steriliser.places))
     case.expect("run-load", run.code, 1 <= bags <= step, bags, f"1 to {step}", "bags")
@@ -60,7 +63,9 @@ def _hands(case: Case, run: Run) -> None:
         start <= run.load_start and run.load_start + minutes(rates.load_bags_h, crew.people) <= run.steam_on <= end
         for crew, start, end in case.shifts(day, "steam")
     )
-    case.expect("run-loading", run.code, loaded, f"loading {case.local(run.load_start):%a %H:%M}", "a steam crew's shift")
+    case.expect(
+        "run-loading", run.code, loaded, f"loading {case.local(run.load_start):%a %H:%M}", "a steam crew's shift"
+    )
     case.expect("run-unload", run.code, run.unload >= run.ready, run.unload, f"from {run.ready}", "min")
     gone = case.local(run.unload).date()
     emptied = any(
@@ -72,7 +77,7 @@ def _hands(case: Case, run: Run) -> None:
 
 def _cycle(case: Case, run: Run) -> CycleRow | None:
     steriliser = case.farm.steriliser_called(run.steriliser)
-    programme = next(p for p in case.farm.programme if p.code == run.programme)
+    programme = {p.code: p for p in case.farm.programme}[run.programme]
     strains = [case.farm.strain_called(code) for code in run.bags]
     kinds = sorted({(s.recipe, s.bag) for s in strains})
     recipes = {r.code: r for r in case.farm.recipe}
@@ -86,7 +91,9 @@ def _cycle(case: Case, run: Run) -> CycleRow | None:
         case.fail("run-cycle", run.code, str(error), "a cycle that can be")
         return None
     takes = run.ready - run.steam_on
-    case.expect("run-cycle", run.code, takes >= row.ready_to_unload_min, takes, f"at least {row.ready_to_unload_min}", "min")
+    case.expect(
+        "run-cycle", run.code, takes >= row.ready_to_unload_min, takes, f"at least {row.ready_to_unload_min}", "min"
+    )
     cools = run.cooled - run.unloaded
     case.expect("run-cooled", run.code, cools >= row.cool_down_min, cools, f"at least {row.cool_down_min}", "min")
     # Alone, a kind of bag may need less than the mixed run it was planned in; never more.
@@ -155,7 +162,7 @@ def _overlap(case: Case) -> None:
         units[run.steriliser, run.unit].append(run)
     for (code, unit), runs in units.items():
         runs.sort(key=lambda r: r.load_start)
-        for before, after in zip(runs, runs[1:], strict=False):
+        for before, after in pairwise(runs):
             ok = before.unloaded <= after.load_start
             case.expect("run-overlap", f"{code} {unit}", ok, f"{before.code} with {after.code}", "one run at a time")
 

@@ -10,6 +10,7 @@ from models.calendar import Week
 from models.farm import Strain
 from models.growth.colonisation import days_to_ready
 from models.plan import Delivery
+from scheduler.referee.bags import stock_flush_days
 from scheduler.referee.case import Case
 from scheduler.referee.earliest import earliest_inoculation
 
@@ -36,7 +37,9 @@ def _deliveries(case: Case) -> None:
         case.expect("deliver", where, key in wanted and key not in seen, item.day, "a delivery day of the order, once")
         seen.add(key)
         case.equal("deliver", f"{where}, ordered", item.ordered_kg, wanted.get(key, 0.0), "kg", 1e-6)
-        case.expect("deliver", where, -1e-9 <= item.kg <= item.ordered_kg + 1e-6, item.kg, f"0 to {item.ordered_kg:g}", "kg")
+        case.expect(
+            "deliver", where, -1e-9 <= item.kg <= item.ordered_kg + 1e-6, item.kg, f"0 to {item.ordered_kg:g}", "kg"
+        )
         case.equal("deliver", f"{where}, short", item.short_kg, item.ordered_kg - item.kg, "kg", 1e-6)
         if 0 <= item.order < len(case.orders):
             order = case.orders[item.order]
@@ -58,7 +61,9 @@ def _fresh(case: Case) -> None:
         out[item.strain][item.day] += item.kg
     for sale in case.plan.surplus:
         ok = min(sale.spot_kg, sale.spoiled_kg) >= -1e-9 and case.inside(sale.day)
-        case.expect("freshness", f"{sale.strain} on {sale.day}", ok, (sale.spot_kg, sale.spoiled_kg), "kilograms, in the plan")
+        case.expect(
+            "freshness", f"{sale.strain} on {sale.day}", ok, (sale.spot_kg, sale.spoiled_kg), "kilograms, in the plan"
+        )
         out[sale.strain][sale.day] += sale.spot_kg + sale.spoiled_kg
     for code in {*picked, *out}:
         life = case.farm.strain_called(code).shelf_life_days
@@ -133,21 +138,21 @@ def _stock_supply(case: Case, strain: Strain) -> list[tuple[date, float]]:
     for row in case.stock:
         if row.strain != strain.code:
             continue
-        start = max(case.first, row.since)
         if row.stage == "fruiting":
-            start = case.first
-        elif row.stage in ("ready", "cold-held"):
+            days = stock_flush_days(case, strain, row)
+            found += [(day, row.bags * share) for day, share in zip(days, kg[len(kg) - len(days) :], strict=True)]
+            continue
+        start = max(case.first, row.since)
+        if row.stage in ("ready", "cold-held"):
             start = case.next_working(start, "open") + timedelta(days=strain.pin_days)
         else:
             rooms = [r for r in case.farm.rooms_of("colonisation") if strain.t_min_c < r.temp_c < strain.t_max_c]
-            days = min((days_to_ready(strain, room.temp_c) for room in rooms), default=0)
-            ready = max(case.first, row.since + timedelta(days=days)) if row.stage == "colonising" else case.first
+            span = min((days_to_ready(strain, room.temp_c) for room in rooms), default=0)
+            ready = max(case.first, row.since + timedelta(days=span)) if row.stage == "colonising" else case.first
             if row.stage == "cooled":
-                ready = case.first + timedelta(days=days)
+                ready = case.first + timedelta(days=span)
             start = case.next_working(ready, "open") + timedelta(days=strain.pin_days)
-        picked = row.flushes_picked or 0
-        left = kg[picked:] if row.stage == "fruiting" else kg
-        for flush, share in enumerate(left):
+        for flush, share in enumerate(kg):
             day = start + timedelta(days=strain.rest_days * flush)
             found.append((day, row.bags * share))
     return found

@@ -217,8 +217,8 @@ def _show_proof(screen: Screen, plan: Plan, verdict: Verdict) -> None:
     report = plan.report
     screen.heading("How good it is")
     screen.wrapped(
-        f"Within {100 * report.gap:.2f} % of the best possible: {report.objective:,.2f} earned, no plan can earn more than"
-        f" {report.bound:,.2f}. Stopped: {report.stop}, after {report.seconds:.1f} s."
+        f"Within {100 * report.gap:.2f} % of the best possible: {report.objective:,.2f} earned, no plan can earn"
+        f" more than {report.bound:,.2f}. Stopped: {report.stop}, after {report.seconds:.1f} s."
     )
     broken = "no rule broken" if not verdict.violations else f"{len(verdict.violations)} rules broken"
     screen.wrapped(f"Recomputed by the referee: {verdict.checked:,} checks, {broken}.")

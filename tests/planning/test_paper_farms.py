@@ -157,7 +157,9 @@ def test_second_flush_is_dumped_while_bags_queue_and_kept_when_they_do_not() -> 
     cheap = planned(tiny(room=rooms(wet=5), strain=two), weeks=6)
     dear_mix = [{"code": "mix", "water_pct": 50, "density_kg_m3": 500, "cost_per_kg": 1.5}]
     dear = planned(tiny(room=rooms(wet=5), strain=two, recipe=dear_mix), weeks=6)
+
     def kept(plan: Plan) -> set[int]:
         return {opening.flushes for opening in plan.openings if opening.day < plan.all_weeks[-4].monday}
+
     assert kept(cheap) == {1}
     assert kept(dear) == {2}

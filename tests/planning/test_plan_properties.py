@@ -37,7 +37,11 @@ def test_littles_law() -> None:
             nights = [monday.toordinal() + k for k in range(7)]
             lots = {lot.code for lot in plan.lots if lot.strain == code}
             standing = [
-                sum(e.bags for e in plan.inoculations if e.lot in lots and e.day.toordinal() <= n < e.ready_day.toordinal())
+                sum(
+                    e.bags
+                    for e in plan.inoculations
+                    if e.lot in lots and e.day.toordinal() <= n < e.ready_day.toordinal()
+                )
                 for n in nights
             ]
             fruiting = [
