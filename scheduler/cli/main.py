@@ -13,7 +13,6 @@ from typing import Annotated
 import typer
 
 from scheduler.cli.check import check
-from scheduler.cli.heat import heat
 from scheduler.cli.new import new
 from scheduler.cli.plan import plan
 
@@ -48,7 +47,6 @@ def main(
 
 app.command("new")(new)
 app.command("check")(check)
-app.command("heat")(heat)
 app.command("plan")(plan)
 
 
