@@ -1,0 +1,1 @@
+"""What is decided on a farm, and what is done with it."""

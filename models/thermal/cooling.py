@@ -94,5 +94,3 @@ def seconds_until(modes: Modes, state: Floats, weights: Floats, air_c: float, be
         middle = (low + high) / 2
         low, high = (middle, high) if temperature(middle) > below_c else (low, middle)
     return high
-
-

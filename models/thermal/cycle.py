@@ -119,8 +119,8 @@ def steam_cycle(
 
     Notes
     -----
-    Metal counts as steel unless said otherwise. Make-up water enters at the feed temperature and condensate is not returned
-    unless ``condensate_return``. After the hold the bags stand in steam until the vent is over; in place they cool in
+    Metal counts as steel unless said otherwise. Make-up water enters at the feed temperature and condensate is not
+    returned unless ``condensate_return``. After the hold the bags stand in steam until the vent is over; in place they cool in
     still air at ambient temperature. A bag's density is its mass over its volume.
     """
     return cycle_in(
@@ -209,9 +209,7 @@ def _boil_up(site: Site, steriliser: Steriliser, power: float, boiling: float, a
     capacity = (
         steriliser.generator_water_kg * WATER_CP_KJ_KG_K + steriliser.generator_metal_kg * steriliser.metal_cp_kj_kg_k
     )
-    seconds = boil_up_seconds(
-        capacity, power, steriliser.generator_loss_w_per_k, site.feed_water_c, boiling, ambient
-    )
+    seconds = boil_up_seconds(capacity, power, steriliser.generator_loss_w_per_k, site.feed_water_c, boiling, ambient)
     if isinf(seconds):
         loss = steriliser.generator_loss_w_per_k * (boiling - ambient) / 1000
         raise ThermalError(f"the generator never boils: it loses {loss:.2f} kW of the element's {power:g} kW")
@@ -240,7 +238,8 @@ def _area(bag: Bag) -> float:
     if bag.diameter_mm is not None:
         radius, height = bag.diameter_mm / 2000, bag.height_mm / 1000
         return 2 * np.pi * radius * (radius + height)
-    assert bag.length_mm is not None and bag.width_mm is not None  # noqa: S101  (held by the farm file)
+    assert bag.length_mm is not None  # noqa: S101  (held by the farm file)
+    assert bag.width_mm is not None  # noqa: S101
     a, b, c = bag.length_mm / 1000, bag.width_mm / 1000, bag.height_mm / 1000
     return 2 * (a * b + b * c + a * c)
 
@@ -303,8 +302,10 @@ def _curve(
     for minutes, vessel, surface, core, mean, kw in zip(*columns, strict=True):
         rows.append(CurveRow(offset + minutes, vessel, surface, core, mean, kw))
     last = rows[-1]
-    for k in range(1, round(60 * vent_h) + 1):
-        rows.append(CurveRow(last.minutes + k, tail.vessel_c, last.surface_c, last.core_c, last.mean_c, 0.0))
+    rows.extend(
+        CurveRow(last.minutes + k, tail.vessel_c, last.surface_c, last.core_c, last.mean_c, 0.0)
+        for k in range(1, round(60 * vent_h) + 1)
+    )
     for seconds, air, modes, amplitudes in (tail.in_place, tail.in_room):
         offset = rows[-1].minutes
         minutes = np.arange(1, ceil(seconds / STEP_S) + 1)
@@ -317,9 +318,7 @@ def _curve(
     return tuple(rows)
 
 
-def _balance_error(
-    trace: Trace, states: Sequence[BagState], vessel: Vessel, start: float, vessel_c: float
-) -> float:
+def _balance_error(trace: Trace, states: Sequence[BagState], vessel: Vessel, start: float, vessel_c: float) -> float:
     """Heat delivered against heat found in bags, metal and losses [%]."""
     found = sum(state.capacity_kj_k * (state.mean_c(vessel_c) - start) for state in states)
     found += vessel.metal_kj_k * (vessel_c - start) + trace.lost_kj
@@ -339,6 +338,7 @@ def _cautions(around: Surroundings, boiling: float, heat_up_h: float, power: flo
     site = around.site
     if site.supply_kw is not None and site.base_load_kw + power > site.supply_kw:
         notes.append(
-            f"Element and base load draw {site.base_load_kw + power:g} kW, more than the supply of {site.supply_kw:g} kW."
+            f"Element and base load draw {site.base_load_kw + power:g} kW,"
+            f" more than the supply of {site.supply_kw:g} kW."
         )
     return tuple(notes)

@@ -57,7 +57,8 @@ def log_reduction(temps_c: Sequence[float], step_min: float, organism: Organism)
     Notes
     -----
     Integral of dt / D(T) with D(T) = D_ref 10^((T_ref - T) / z). A constant z over-credits temperatures below about
-    105 °C (van Doornmalen and Kopinga, J. Appl. Microbiol. 107 (2009), doi 10.1111/j.1365-2672.2009.04290.x): indicative only.
+    105 °C (van Doornmalen and Kopinga, J. Appl. Microbiol. 107 (2009), doi 10.1111/j.1365-2672.2009.04290.x):
+    indicative only.
 
     Examples
     --------

@@ -60,13 +60,15 @@ def saturation_temperature(pressure_pa: float) -> float:
     372.755919
     """
     if not 611.0 <= pressure_pa <= 22.064e6:
-        raise ThermalError(f"a vapour pressure between 0.611 kPa and 22 MPa was expected; found {pressure_pa / 1e3:g} kPa")
+        raise ThermalError(
+            f"a vapour pressure between 0.611 kPa and 22 MPa was expected; found {pressure_pa / 1e3:g} kPa"
+        )
     beta = (pressure_pa / 1e6) ** 0.25
     e = beta**2 + _N[2] * beta + _N[5]
     f = _N[0] * beta**2 + _N[3] * beta + _N[6]
     g = _N[1] * beta**2 + _N[4] * beta + _N[7]
     d = 2 * g / (-f - sqrt(f**2 - 4 * e * g))
-    return (_N[9] + d - sqrt((_N[9] + d) ** 2 - 4 * (_N[8] + _N[9] * d))) / 2 - KELVIN
+    return float((_N[9] + d - sqrt((_N[9] + d) ** 2 - 4 * (_N[8] + _N[9] * d))) / 2 - KELVIN)
 
 
 def latent_heat(temp_c: float) -> float:

@@ -212,7 +212,7 @@ def round_openings(flow: StockAndFlow, values: FloatArray) -> dict[int, float]:
         totals[key] = (planned, done + bags)
         fixed[column] = float(bags)
 
-    for (strain, source, day), column in sorted(flow.columns.hold.items(), key=lambda item: (item[0][2], item[0])):
+    for (strain, source, _), column in sorted(flow.columns.hold.items(), key=lambda item: (item[0][2], item[0])):
         follow((0, strain, source), column)
     by_day: dict[tuple[int, int], list[tuple[int, int, int]]] = {}
     for (strain, pool, day, flushes), column in flow.columns.open.items():
