@@ -120,8 +120,8 @@ def steam_cycle(
     Notes
     -----
     Metal counts as steel unless said otherwise. Make-up water enters at the feed temperature and condensate is not
-    returned unless ``condensate_return``. After the hold the bags stand in steam until the vent is over; in place they cool in
-    still air at ambient temperature. A bag's density is its mass over its volume.
+    returned unless ``condensate_return``. After the hold the bags stand in steam until the vent is over; in
+    place they cool in still air at ambient temperature. A bag's density is its mass over its volume.
     """
     return cycle_in(
         Surroundings.of(farm), steriliser, programme, tuple(load), month=month, element_kw=element_kw, start_c=start_c
