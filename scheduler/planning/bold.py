@@ -23,9 +23,16 @@ ROUNDING_NODES = 2_000
 
 
 def bold_plan(
-    flow: StockAndFlow, relaxation: Relaxation, base: FloatArray, low: FloatArray, high: FloatArray
+    flow: StockAndFlow,
+    relaxation: Relaxation,
+    base: FloatArray,
+    low: FloatArray,
+    high: FloatArray,
+    reserve: float = 1.0,
 ) -> tuple[Answer, Made]:
     """Round runs, fillings, inoculations and openings one after the other.
+
+    ``reserve`` scales what is kept back for rounding [-].
 
     Raises
     ------
@@ -33,7 +40,7 @@ def bold_plan(
         A stage has no solution after the rounding before it.
     """
     fix(relaxation, low, high, round_runs(flow, base))
-    keep_back(flow, relaxation)
+    keep_back(flow, relaxation, reserve)
     allow_discards(flow, relaxation, high)
     answer = _solved(relaxation)
     assert answer.values is not None  # noqa: S101  (_solved raises otherwise)
@@ -46,6 +53,7 @@ def bold_plan(
             whole[column] = low[column]
     made = make_lots(flow, whole)
     whole_losses(flow, made, relaxation)
+    keep_back(flow, relaxation, reserve / 2)
     answer = _solved(relaxation)
     assert answer.values is not None  # noqa: S101
     fix(relaxation, low, high, round_openings(flow, answer.values))
@@ -60,16 +68,19 @@ def _solved(relaxation: Relaxation) -> Answer:
     return answer
 
 
-def keep_back(flow: StockAndFlow, relaxation: Relaxation) -> None:
-    """Keep a few places and minutes free, so that rounding up does not pass a limit."""
+def keep_back(flow: StockAndFlow, relaxation: Relaxation, part: float = 1.0) -> None:
+    """Keep a few places and minutes free, so that rounding up does not pass a limit.
+
+    Fills and inoculations may use one half of them (`part` is what stays), openings the other.
+    """
     rates = flow.problem.farm.rates
     slowest = min(rates.mix_bags_h, rates.inoculate_bags_h, rates.open_bags_h, rates.discard_bags_h)
     bags = 2.0 * len(flow.active)
     for column, places in flow.place_states:
         if flow.matrix.column_high[column] == places:
-            relaxation.bound(column, 0.0, places - min(bags, 0.02 * places))
+            relaxation.bound(column, 0.0, places - part * min(bags, 0.02 * places))
     for row, hours in flow.hour_rows:
-        relaxation.bound_row(row, -np.inf, hours - min(bags / slowest, 0.05 * hours))
+        relaxation.bound_row(row, -np.inf, hours - part * min(bags / slowest, 0.05 * hours))
 
 
 def give_back(flow: StockAndFlow, relaxation: Relaxation) -> None:

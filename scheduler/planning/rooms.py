@@ -104,6 +104,8 @@ class House:
                 continue
             self.standing[batch.room] += batch.bags
             if batch.held:
+                entered, ready = self._date(batch.inoculated), self._date(batch.ready)
+                self.housed.holdings.append(Holding(batch.lot, entered, "", ready, batch.room, batch.bags, before=True))
                 self._put(batch, batch.room, held=batch.inoculated)
             else:
                 event = Inoculation(

@@ -33,6 +33,7 @@ from scheduler.planning.whole import bounds_of, run_candidates, whole_bags
 
 Progress = Callable[[str, float | None, float | None, float | None], None]
 RUN_WINDOWS = (10, 3, 5, 7, 14)
+RESERVES = (1.0, 2.0, 4.0)
 EXACT_COLUMNS = 900
 EXACT_NODES = 20_000
 
@@ -141,16 +142,20 @@ class Planner:
 
     def _round_boldly(self, search: _Search, relaxation: Relaxation, values: FloatArray) -> None:
         """Large farms: one rounding a stage."""
-        low, high = bounds_of(self.flow.matrix)
-        self._tell("rounding runs and bags", search)
-        try:
-            answer, made = bold_plan(self.flow, relaxation, values, low, high)
-        except Dead:
-            search.stop = "rounding found no plan"
+        for number, reserve in enumerate(RESERVES):
+            if number:
+                relaxation = self._fresh(relaxation)
+            low, high = bounds_of(self.flow.matrix)
+            self._tell("rounding runs and bags", search)
+            try:
+                answer, made = bold_plan(self.flow, relaxation, values, low, high, reserve)
+            except Dead:
+                search.stop = "rounding found no plan"
+                continue
+            if answer.values is not None:
+                self._offer(search, answer.values, made)
+            search.stop = "gap reached" if search.gap <= self.limits.gap else "one rounding done"
             return
-        if answer.values is not None:
-            self._offer(search, answer.values, made)
-        search.stop = "gap reached" if search.gap <= self.limits.gap else "one rounding done"
 
     def _exact(self, search: _Search) -> None:
         """On small farms, search all whole numbers at once; it also lowers the bound."""

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+from datetime import timedelta
 
 import pytest
 
@@ -115,6 +116,25 @@ def test_opening_stock_is_sold_when_it_can_be(stage: str, since: str, sold: list
     assert [delivery.kg for delivery in plan.deliveries[:2]] == pytest.approx(sold, abs=1e-6)
     short = [delivery.short_kg - delivery.unavoidable_kg for delivery in plan.deliveries]
     assert min(short) >= -1e-9
+
+
+def test_cold_held_stock_is_opened_in_time() -> None:
+    """Five bags in the cold since 10 January, good for 30 days: opened for the Friday that pays most."""
+    rooms = [
+        {"code": "cool", "kind": "cooling", "places": 100, "temp_c": 15},
+        {"code": "shelf", "kind": "colonisation", "places": 100, "temp_c": 22},
+        {"code": "cold", "kind": "cold-hold", "places": 10, "temp_c": 3},
+        {"code": "wet", "kind": "fruiting", "places": 100, "temp_c": 15},
+    ]
+    farm = tiny(room=rooms, strain=[strain(cold_hold_days=30)], steriliser=tiny().model_dump()["steriliser"])
+    weeks = [(START.plus(1), 5.0), (START.plus(2), 40.0)]
+    book = [friday(25.0, price=price, first_week=week, last_week=week) for week, price in weeks]
+    plan = planned(stocked("cold-held", 5, "2027-01-10"), book, farm)
+    opened = [
+        (o.held_day is not None, o.bags, o.day >= START.plus(1).monday - timedelta(days=2)) for o in plan.openings
+    ]
+    assert (True, 5, True) in opened
+    assert plan.deliveries[1].kg == pytest.approx(15.0)  # ten new bags and the five
 
 
 def test_stock_that_fills_a_room_twice_over_is_a_shortfall_not_a_failure() -> None:
