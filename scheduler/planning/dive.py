@@ -6,7 +6,7 @@ window of days; the relaxation then moves everything else. What cannot be rounde
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 from math import ceil, floor
 
@@ -54,7 +54,6 @@ def dive(
     style: Style,
     low: FloatArray,
     high: FloatArray,
-    tell: Callable[[float], None],
 ) -> Answer:
     """Make all candidate columns whole and fix them; ``low`` and ``high`` are updated in place.
 
@@ -69,7 +68,6 @@ def dive(
         if not batch:
             break
         answer = _step(relaxation, answer.values, batch, low, high)
-        tell(answer.objective)
     for item in candidates:
         value = float(round(answer.values[item.column]))
         low[item.column] = high[item.column] = value

@@ -30,12 +30,20 @@ _HIGHS_LINE = re.compile(r"%\s+(?P<bound>-?[\d.]+(?:e[+-]?\d+)?|-?inf)\s+(?P<bes
 
 @dataclass(frozen=True, slots=True)
 class Answer:
-    """What a solve gave: column values (None if it found none), objective, proven bound, why it stopped."""
+    """What a solve gave: column values (None if it found none), objective, proven bound, why it stopped, time [s]."""
 
     values: FloatArray | None
     objective: float
     bound: float
     stop: str
+    seconds: float = 0.0
+
+    @property
+    def known(self) -> FloatArray:
+        """The column values of a solve that found some; ArithmeticError otherwise."""
+        if self.values is None:
+            raise ArithmeticError(f"a solve ended without values: {self.stop}")
+        return self.values
 
 
 LARGE_COLUMNS = 22_000

@@ -29,11 +29,12 @@ from scheduler.planning.lots import Made, make_lots
 from scheduler.planning.problem import Problem, state_problem
 from scheduler.planning.rooms import House
 from scheduler.planning.supply import Supply, relax_within_supply
-from scheduler.planning.whole import bounds_of, run_candidates, whole_bags
+from scheduler.planning.whole import bounds_of, fix, open_bags, run_candidates, whole_bags
 
 Progress = Callable[[str, float | None, float | None, float | None], None]
 RUN_WINDOWS = (10, 3, 5, 7, 14)
 RESERVES = (1.0, 2.0, 4.0)
+SUPPLY_ROUNDS = 12
 EXACT_COLUMNS = 900
 EXACT_NODES = 20_000
 
@@ -90,25 +91,39 @@ class Planner:
         return self._signed(search)
 
     def _search(self, search: _Search) -> None:
+        relaxation, base = self._relaxed(search)
+        self.relaxation_seconds = base.seconds / max(1, relaxation.solves)
+        if relaxation.large:
+            self._round_boldly(search, relaxation, base)
+        else:
+            self._try_styles(search, relaxation, base)
+        if search.plan is None:
+            self._without_runs(search)
+
+    def _relaxed(self, search: _Search) -> tuple[Relaxation, Answer]:
+        """The relaxation within every supply row there is; it may only lower the bound."""
         started = time.perf_counter()
         self._tell("solving the relaxation", search)
-        relaxation, values, search.bound = relax_within_supply(self.flow, self.supply)
-        self.relaxation_seconds = (time.perf_counter() - started) / max(1, relaxation.solves)
-        if relaxation.large:
-            self._round_boldly(search, relaxation, values)
-            return
-        base = Answer(values, search.bound, search.bound, "optimal")
+        relaxation, answer = relax_within_supply(self.flow, self.supply)
+        search.bound = min(search.bound, answer.objective)
+        return relaxation, replace(answer, seconds=time.perf_counter() - started)
+
+    def _try_styles(self, search: _Search, relaxation: Relaxation, base: Answer) -> None:
+        """Small farms: dive in one style after the other until the gap is met."""
         for number, window in enumerate(RUN_WINDOWS):
-            if number:
-                relaxation = self._fresh(relaxation)
-            self._dive(search, relaxation, base, window)
+            for _ in range(SUPPLY_ROUNDS):
+                broken = self._dive(search, self._fresh(relaxation), base, window)
+                if not broken or (self._time_left() <= 0 and search.plan is not None):
+                    break
+                self.supply.add(broken)
+                relaxation, base = self._relaxed(search)
             if search.gap <= self.limits.gap:
                 return
             if self._time_left() <= 0 and search.plan is not None:
                 search.stop = "time limit"
                 return
             if number == 0 and sum(self.flow.matrix.whole) <= EXACT_COLUMNS:
-                self._exact(search)
+                self._exact(search, self._fresh(relaxation))
                 if search.gap <= self.limits.gap:
                     return
         search.stop = "every search style tried"
@@ -125,49 +140,80 @@ class Planner:
             relaxation.bound_row(row, matrix.row_low[row], matrix.row_high[row])
         return relaxation
 
-    def _dive(self, search: _Search, relaxation: Relaxation, base: Answer, window: int) -> None:
+    def _dive(self, search: _Search, relaxation: Relaxation, base: Answer, window: int) -> list[int]:
+        """Dive to whole runs and bags; the supply slots that the runs break, if they do."""
         low, high = bounds_of(self.flow.matrix)
         try:
             self._tell("choosing runs", search)
             style = Style(window_days=window, sparse=True)
-            answer = dive(relaxation, base, run_candidates(self.flow), style, low, high, lambda _: None)
-            if answer.values is None or self.supply.broken(answer.values):
-                return
+            answer = dive(relaxation, base, run_candidates(self.flow), style, low, high)
+            broken = self.supply.broken(answer.known)
+            if broken:
+                return broken
             self._tell("making bags whole", search)
-            answer, made = whole_bags(self.flow, relaxation, answer, low, high, lambda _: None)
+            answer, made = whole_bags(self.flow, relaxation, answer, low, high)
         except Dead:
-            return
-        if answer.values is not None:
-            self._offer(search, answer.values, made)
+            return []
+        self._offer(search, answer.known, made)
+        return []
 
-    def _round_boldly(self, search: _Search, relaxation: Relaxation, values: FloatArray) -> None:
-        """Large farms: one rounding a stage."""
-        for number, reserve in enumerate(RESERVES):
-            if number:
-                relaxation = self._fresh(relaxation)
+    def _round_boldly(self, search: _Search, relaxation: Relaxation, base: Answer) -> None:
+        """Large farms: one rounding a stage, with more kept back where it failed."""
+        reserves = list(RESERVES)
+        for _ in range(SUPPLY_ROUNDS):
+            if not reserves:
+                return
             low, high = bounds_of(self.flow.matrix)
             self._tell("rounding runs and bags", search)
             try:
-                answer, made = bold_plan(self.flow, relaxation, values, low, high, reserve)
+                answer, made = bold_plan(self.flow, self._fresh(relaxation), base.known, low, high, reserves[0])
             except Dead:
                 search.stop = "rounding found no plan"
+                reserves.pop(0)
                 continue
-            if answer.values is not None:
-                self._offer(search, answer.values, made)
-            search.stop = "gap reached" if search.gap <= self.limits.gap else "one rounding done"
-            return
+            broken = self.supply.broken(answer.known)
+            if not broken:
+                self._offer(search, answer.known, made)
+                search.stop = "gap reached" if search.gap <= self.limits.gap else "one rounding done"
+                return
+            self.supply.add(broken)
+            relaxation, base = self._relaxed(search)
 
-    def _exact(self, search: _Search) -> None:
+    def _without_runs(self, search: _Search) -> None:
+        """The plan that steams nothing: what already stands in the rooms is opened and sold."""
+        relaxation = Relaxation(self.flow.matrix)
+        low, high = bounds_of(self.flow.matrix)
+        fix(relaxation, low, high, dict.fromkeys(self.flow.columns.run, 0.0))
+        try:
+            answer, made = whole_bags(self.flow, relaxation, relaxation.solve(), low, high)
+        except Dead:
+            return
+        search.stop = "no plan with runs found"
+        self._offer(search, answer.known, made)
+
+    def _exact(self, search: _Search, relaxation: Relaxation) -> None:
         """On small farms, search all whole numbers at once; it also lowers the bound."""
         matrix = self.flow.matrix
         low, high = bounds_of(matrix)
-        answer = branch(
+        found = branch(
             matrix, low, high, np.array(matrix.whole), gap=min(self.limits.gap, 1e-4), seconds=self._time_left(),
             nodes=EXACT_NODES, listener=lambda _, bound: self._tell("searching whole numbers", search, bound),
         )  # fmt: skip
-        search.bound = min(search.bound, answer.bound)
-        if answer.values is not None and not self.supply.broken(answer.values):
-            self._offer(search, answer.values, make_lots(self.flow, answer.values))
+        search.bound = min(search.bound, found.bound)
+        if found.values is None or self.supply.broken(found.values):
+            return
+        made = make_lots(self.flow, found.values)
+        if not any(batch.loss_pct for batch in made.batches):
+            self._offer(search, found.values, made)
+            return
+        # Losses are whole bags: the openings are decided again with them.
+        made_columns = [*self.flow.columns.run, *self.flow.columns.fill.values(), *self.flow.columns.inoculate.values()]
+        fix(relaxation, low, high, {column: float(round(found.values[column])) for column in made_columns})
+        try:
+            answer = open_bags(self.flow, made, relaxation, low, high)
+        except Dead:
+            return
+        self._offer(search, answer.known, made)
 
     def _offer(self, search: _Search, values: FloatArray, made: Made) -> None:
         plan = self._plan(values, made)

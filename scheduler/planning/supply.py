@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from math import inf
 
-from scheduler.planning.engine import FloatArray, Relaxation
+from scheduler.planning.engine import Answer, FloatArray, Relaxation
 from scheduler.planning.network import half_hour_draw, supply_may_bind
 from scheduler.planning.stock_and_flow import StockAndFlow
 
@@ -47,14 +47,12 @@ class Supply:
             self.flow.matrix.row("supply", slot, self._draw[slot], high=self.spare_kw)
 
 
-def relax_within_supply(flow: StockAndFlow, supply: Supply) -> tuple[Relaxation, FloatArray, float]:
-    """Solve the relaxation, adding supply rows until none is broken; the kept-warm relaxation, values, objective."""
+def relax_within_supply(flow: StockAndFlow, supply: Supply) -> tuple[Relaxation, Answer]:
+    """Solve the relaxation, adding supply rows until none is broken; the relaxation, kept warm, and its answer."""
     while True:
         relaxation = Relaxation(flow.matrix)
         answer = relaxation.solve()
-        if answer.values is None:
-            raise ArithmeticError(f"the relaxation ended {answer.stop}")
-        broken = supply.broken(answer.values)
+        broken = supply.broken(answer.known)
         if not broken:
-            return relaxation, answer.values, answer.objective
+            return relaxation, answer
         supply.add(broken)

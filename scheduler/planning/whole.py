@@ -2,11 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
-
 import numpy as np
 
-from scheduler.planning.dive import Candidate, Style, dive
+from scheduler.planning.dive import Candidate, Dead, Style, dive
 from scheduler.planning.engine import Answer, FloatArray, Relaxation
 from scheduler.planning.lots import Made, make_lots
 from scheduler.planning.matrix import Matrix
@@ -69,12 +67,7 @@ def whole_losses(flow: StockAndFlow, made: Made, relaxation: Relaxation) -> None
 
 
 def whole_bags(
-    flow: StockAndFlow,
-    relaxation: Relaxation,
-    answer: Answer,
-    low: FloatArray,
-    high: FloatArray,
-    tell: Callable[[float], None],
+    flow: StockAndFlow, relaxation: Relaxation, answer: Answer, low: FloatArray, high: FloatArray
 ) -> tuple[Answer, Made]:
     """Make every bag whole, runs being fixed.
 
@@ -82,16 +75,33 @@ def whole_bags(
     -------
     Answer, Made
         The last relaxation, with whole run, fill, inoculation, cold and opening columns, and the lots in it.
+
+    Raises
+    ------
+    Dead
+        Some stage has no whole solution.
     """
     allow_discards(flow, relaxation, high)
     for candidates in (fill_candidates(flow), inoculation_candidates(flow)):
-        answer = dive(relaxation, answer, candidates, BAG_STYLE, low, high, tell)
-    assert answer.values is not None  # noqa: S101
-    made = make_lots(flow, answer.values)
+        answer = dive(relaxation, answer, candidates, BAG_STYLE, low, high)
+    made = make_lots(flow, answer.known)
+    return open_bags(flow, made, relaxation, low, high), made
+
+
+def open_bags(flow: StockAndFlow, made: Made, relaxation: Relaxation, low: FloatArray, high: FloatArray) -> Answer:
+    """Give losses whole numbers and decide openings as whole bags; runs, fillings and inoculations being fixed.
+
+    Raises
+    ------
+    Dead
+        The openings have no whole solution.
+    """
+    allow_discards(flow, relaxation, high)
     whole_losses(flow, made, relaxation)
     answer = relaxation.solve()
-    answer = dive(relaxation, answer, opening_candidates(flow), BAG_STYLE, low, high, tell)
-    return answer, made
+    if answer.values is None:
+        raise Dead
+    return dive(relaxation, answer, opening_candidates(flow), BAG_STYLE, low, high)
 
 
 def fix(relaxation: Relaxation, low: FloatArray, high: FloatArray, values: dict[int, float]) -> None:

@@ -146,3 +146,25 @@ def test_stock_that_fills_a_room_twice_over_is_a_shortfall_not_a_failure() -> No
     plan = planned(stocked("colonising", 9, "2027-01-13"), [friday(5.0)], tiny(room=rooms))
     assert {(fall.limit, fall.amount) for fall in plan.shortfalls} == {("places shelf", 5.0)}
     assert plan.money.over_limits == pytest.approx(-100.0 * 5 * 2)  # the nights of the 18th and 19th
+
+
+def test_two_sterilisers_that_may_not_heat_at_once_take_turns() -> None:
+    """Two drums of 4 kW on a supply of 5 kW: each heats alone, and twenty kilograms still come every week.
+
+    Both are loaded on Monday from one pot of mix; the second waits until the first has reached its hold.
+    """
+    drum = [{"code": "drum", "count": 2, "places": 10, "element_kw": 4, "loads": [1.0], "unload_below_c": 70,
+             "vent_min": 0, "generator_water_kg": 10, "loss_w_per_k": 2}]  # fmt: skip
+    crews = tiny().model_dump()["crew"]
+    book = [friday(20.0)]
+    starts = {}
+    for supply_kw in (20.0, 5.0):
+        site = {"name": "Paper Farm", "timezone": "Europe/Dublin", "ambient_c": 15, "supply_kw": supply_kw}
+        farm = tiny(steriliser=drum, site=site, crew=crews)
+        plan = plan_weeks(farm, book, [], START, 3, limits=EXACT)
+        assert referee(farm, book, [], plan).violations == ()
+        assert plan.money.sales == pytest.approx(10.0 * 20 * (len(plan.all_weeks) - 2))
+        first = [run.steam_on for run in plan.runs if run.code.startswith(START.short)]
+        starts[supply_kw] = max(first) - min(first)
+    assert starts[20.0] == 0
+    assert starts[5.0] >= 60
