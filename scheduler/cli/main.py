@@ -13,10 +13,14 @@ from typing import Annotated
 import typer
 
 from scheduler.cli.check import check
+from scheduler.cli.heat import heat
 from scheduler.cli.new import new
 from scheduler.cli.plan import plan
 
 INTERRUPTED = 130
+LONGEST_SENTENCE = 300
+UsageProblem = typer.BadParameter.__mro__[2]
+"""What the command-line library raises for a wrong option; releases keep the class in different places."""
 
 app = typer.Typer(
     name="bagweek",
@@ -47,6 +51,7 @@ def main(
 
 app.command("new")(new)
 app.command("check")(check)
+app.command("heat")(heat)
 app.command("plan")(plan)
 
 
@@ -78,17 +83,15 @@ def _run() -> int:
 
 def _refused(error: Exception) -> int:
     """Say what was refused in plain words; anything unforeseen is raised again."""
-    from click import ClickException
-    from click.exceptions import Abort, Exit
-
     from scheduler.errors import BagweekError
 
-    if isinstance(error, Exit):
+    if isinstance(error, typer.Exit):
         return error.exit_code
-    if isinstance(error, Abort):
+    if isinstance(error, typer.Abort):
         return INTERRUPTED
-    if isinstance(error, ClickException):
-        typer.echo(f"bagweek: {error.format_message()}", err=True)
+    if isinstance(error, UsageProblem):
+        words = error.format_message() if hasattr(error, "format_message") else str(error)
+        typer.echo(f"bagweek: {' '.join(words.split())}" if len(words) < LONGEST_SENTENCE else words, err=True)
         return 2
     if isinstance(error, BagweekError):
         typer.echo(str(error), err=True)

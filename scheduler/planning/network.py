@@ -15,10 +15,11 @@ from math import ceil
 import numpy as np
 from numpy.typing import NDArray
 
-from models.farm import Bag, Farm, Programme, Recipe, Steriliser, clock_minutes
+from models.farm import Bag, Farm, Programme, Recipe, Steriliser
 from models.thermal.errors import ThermalError
 from models.thermal.table import CycleRow, cycle_row
 from scheduler.planning.shifts import Shifts
+from scheduler.tariff import price_at
 
 FINE_GRID_MIN = 60
 COARSE_GRID_MIN = 60
@@ -82,16 +83,6 @@ def run_kinds(farm: Farm) -> tuple[RunKind, ...]:
             everyone = tuple(sorted(index for strains in members.values() for index in strains))
             kinds.append(RunKind(programme, everyone, tuple(families)))
     return tuple(kinds)
-
-
-def price_at(farm: Farm, minutes_after_midnight: int) -> float:
-    """Price of a kilowatt-hour at a local clock time [currency/kWh]; the first period that fits counts."""
-    for period in farm.tariff.periods:
-        start, end = clock_minutes(period.start), clock_minutes(period.to)
-        now = minutes_after_midnight
-        if (start <= now < end) if start < end else (now >= start or now < end):
-            return period.price
-    return farm.tariff.default
 
 
 def supply_may_bind(farm: Farm) -> bool:
@@ -167,7 +158,7 @@ class RunNetwork:
 
     def _price_by_minute(self) -> NDArray[np.float64]:
         """Tariff price at each elapsed minute [currency/kWh]."""
-        of_day = np.array([price_at(self.farm, minute) for minute in range(1440)])
+        of_day = np.array([price_at(self.farm.tariff, minute) for minute in range(1440)])
         prices = np.empty(self._midnight[self.shifts.days])
         for day in range(self.shifts.days):
             start, end = self._midnight[day], self._midnight[day + 1]

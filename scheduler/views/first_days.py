@@ -3,29 +3,16 @@
 from __future__ import annotations
 
 from datetime import date, timedelta
-from typing import Protocol
 
 from models.calendar import FarmClock
 from models.farm import Farm
 from models.plan import Plan, Run
+from scheduler.views.screen import Screen
 
 DAYS = 14
 
 
-class Lines(Protocol):
-    """What the day list needs of a screen."""
-
-    def heading(self, text: str) -> None:
-        """Print a heading."""
-
-    def wrapped(self, text: str, indent: str = "", style: str = "") -> None:
-        """Print a paragraph."""
-
-    def line(self, text: str = "", style: str = "") -> None:
-        """Print a line."""
-
-
-def show_first_days(screen: Lines, farm: Farm, plan: Plan, clock: FarmClock) -> None:
+def show_first_days(screen: Screen, farm: Farm, plan: Plan, clock: FarmClock) -> None:
     """Print what is to be done on each of the first days; days without work are left out."""
     screen.heading("The first two weeks, day by day")
     for offset in range(min(DAYS, 7 * plan.weeks)):

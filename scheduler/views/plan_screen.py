@@ -9,7 +9,6 @@ from collections.abc import Iterable, Sequence
 from zoneinfo import ZoneInfo
 
 from rich.console import Console
-from rich.text import Text
 
 from models.calendar import FarmClock
 from models.farm import Farm, Order
@@ -17,9 +16,9 @@ from models.plan import MONEY_LINES, Plan
 from scheduler.limits_seen import limit_sentence, uses
 from scheduler.referee import Verdict
 from scheduler.views.first_days import show_first_days
+from scheduler.views.screen import Screen
 from scheduler.weekly import WeekRow, weekly
 
-WIDTH = 80
 STRAINS_A_BLOCK = 8
 ROOMS_A_BLOCK = 4
 MONEY_NAMES = {
@@ -55,7 +54,7 @@ def show_plan(console: Console, farm: Farm, orders: Sequence[Order], plan: Plan,
     rows = every[: plan.weeks]
     screen.title(f"{farm.site.name}: {plan.weeks} week{'s' * (plan.weeks != 1)} from {plan.first_week}")
     if verdict.violations:
-        screen.violations(verdict)
+        _show_violations(screen, verdict)
     _show_weeks(screen, rows, farm.site.currency)
     _show_strains(screen, rows, farm)
     _show_rooms(screen, rows, farm)
@@ -68,45 +67,12 @@ def show_plan(console: Console, farm: Farm, orders: Sequence[Order], plan: Plan,
     _show_proof(screen, plan, verdict)
 
 
-class Screen:
-    """A console with the few shapes that a plan needs."""
-
-    def __init__(self, console: Console) -> None:
-        self.console = console
-        self.width = min(console.width, WIDTH)
-        self._rule = "-" if console.options.ascii_only else "─"
-        self.full, self.empty = ("#", ".") if console.options.ascii_only else ("▪", "·")
-
-    def line(self, text: str = "", style: str = "") -> None:
-        """One line, cut to the width."""
-        self.console.print(Text(text[: self.width].rstrip(), style=style), soft_wrap=True)
-
-    def title(self, text: str) -> None:
-        """The first line."""
-        self.line(text, "bold")
-
-    def heading(self, text: str) -> None:
-        """A blank line, then a heading over a rule."""
-        self.line()
-        self.line(text, "bold")
-        self.line(self._rule * self.width, "dim")
-
-    def wrapped(self, text: str, indent: str = "", style: str = "") -> None:
-        """A paragraph."""
-        words, line = text.split(), indent
-        for word in words:
-            if len(line) + len(word) + 1 > self.width and line.strip():
-                self.line(line, style)
-                line = indent
-            line += ("" if line == indent else " ") + word
-        self.line(line, style)
-
-    def violations(self, verdict: Verdict) -> None:
-        """Say that a plan must not be used, and why."""
-        self.line()
-        self.line(f"This plan breaks {len(verdict.violations)} rules and must not be used:", "bold red")
-        for violation in verdict.violations[:20]:
-            self.wrapped(violation.sentence(), "  ", "red")
+def _show_violations(screen: Screen, verdict: Verdict) -> None:
+    """Say that a plan must not be used, and why."""
+    screen.line()
+    screen.line(f"This plan breaks {len(verdict.violations)} rules and must not be used:", "bold red")
+    for violation in verdict.violations[:20]:
+        screen.wrapped(violation.sentence(), "  ", "red")
 
 
 def blocks(items: Sequence[str], size: int) -> Iterable[Sequence[str]]:

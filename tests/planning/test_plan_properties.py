@@ -12,8 +12,8 @@ from models.farm import Farm, Order, StockLot
 from models.plan import Plan
 from scheduler.folder import read_farm_folder, scenario_folder
 from scheduler.planning import SolveLimits, plan_weeks
-from scheduler.planning.network import price_at
 from scheduler.referee import referee
+from scheduler.tariff import price_at
 from scheduler.views.plan_json import plan_document
 from tests.planning.tiny import friday, strain, tiny
 
@@ -84,7 +84,7 @@ def test_more_places_never_earn_less(bigger: int) -> None:
 
 def test_tariff_wraps_midnight() -> None:
     farm = tiny(tariff={"default": 0.3, "periods": [{"from": "23:00", "to": "08:00", "price": 0.1}]})
-    assert [price_at(farm, 60 * hour) for hour in (22, 23, 0, 7, 8)] == [0.3, 0.1, 0.1, 0.1, 0.3]
+    assert [price_at(farm.tariff, 60 * hour) for hour in (22, 23, 0, 7, 8)] == [0.3, 0.1, 0.1, 0.1, 0.3]
 
 
 def stocked(stage: str, bags: int, since: str, **more: object) -> StockLot:
