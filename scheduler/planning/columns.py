@@ -31,6 +31,7 @@ class Columns:
     leaving: dict[tuple[int, int, int], list[int]] = field(default_factory=dict)  # strain, source, day: opened from it
     open: dict[tuple[int, int, int, int], int] = field(default_factory=dict)  # strain, fruit pool, day, flushes
     keep: dict[tuple[int, int], int] = field(default_factory=dict)  # fruiting stock lot, flushes in all
+    cooled: dict[tuple[int, int], int] = field(default_factory=dict)  # strain, day: bags still to inoculate
     drop_cooled: dict[tuple[int, int], int] = field(default_factory=dict)  # strain, day
     drop_ready: dict[tuple[int, int, int], int] = field(default_factory=dict)  # strain, source, day
     serve: dict[tuple[int, int], int] = field(default_factory=dict)  # order day (index), pick day

@@ -9,7 +9,7 @@ from __future__ import annotations
 import datetime as dt
 import re
 import threading
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass
 from math import inf, nan
 from typing import Any
@@ -79,6 +79,11 @@ class Relaxation:
         """Set the bounds of a row."""
         self._rows[row].lower_bound = low
         self._rows[row].upper_bound = high
+
+    def prefer(self, columns: Iterable[int], gain: float) -> None:
+        """Add a slight preference to columns, to choose among plans that earn the same; bounds no longer hold after."""
+        for column in columns:
+            self._model.objective.set_linear_coefficient(self._columns[column], gain)
 
     def solve(self) -> Answer:
         """Solve to the optimum within the bounds as they are now."""

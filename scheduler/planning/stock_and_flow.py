@@ -158,6 +158,7 @@ class StockAndFlow:
             drop = self.matrix.column(high=self.discard_limit(day, stocked=bool(stock)))
             self.columns.drop_cooled[strain, day] = drop
             state = self.matrix.column()
+            self.columns.cooled[strain, day] = state
             terms = [(state, 1.0), (drop, 1.0), *((column, 1.0) for column in flows)]
             terms += [(column, -1.0) for column in arriving.get(day, ())]
             if before is not None:
