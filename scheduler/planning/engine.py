@@ -144,7 +144,7 @@ def _stop_reason(result: Any) -> str:
         return "gap reached"
     limit = termination.limit
     names = {mathopt.Limit.TIME: "time limit", mathopt.Limit.NODE: "node limit"}
-    return names.get(limit, str(termination.reason.name).lower().replace("_", " "))
+    return names.get(limit, "node limit" if result.has_primal_feasible_solution() else "no plan found")
 
 
 def _in_thread(solve: Callable[[], Any]) -> Any:

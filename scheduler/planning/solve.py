@@ -39,6 +39,7 @@ WAIT_COST = 2e-3
 SUPPLY_ROUNDS = 12
 EXACT_COLUMNS = 900
 EXACT_NODES = 20_000
+RUN_NODES = 400
 
 
 @dataclass(frozen=True, slots=True)
@@ -129,6 +130,32 @@ class Planner:
                 if search.gap <= self.limits.gap:
                     return
         search.stop = "every search style tried"
+        self._branch_on_runs(search, self._fresh(relaxation))
+
+    def _branch_on_runs(self, search: _Search, relaxation: Relaxation) -> None:
+        """Where diving leaves a gap: search whole runs with bags in parts, then make those bags whole."""
+        matrix = self.flow.matrix
+        low, high = bounds_of(matrix)
+        whole = np.zeros(matrix.columns, dtype=bool)
+        whole[self.flow.columns.run] = True
+        self._tell("searching runs", search)
+        found = branch(
+            matrix, low, high, whole, gap=self.limits.gap / 4, seconds=self._time_left(), nodes=RUN_NODES,
+            listener=lambda _, bound: self._tell("searching runs", search, bound),
+        )  # fmt: skip
+        search.bound = min(search.bound, found.bound)
+        if search.gap <= self.limits.gap:
+            search.stop = "gap reached"
+        if found.values is None or self.supply.broken(found.values):
+            return
+        runs = {column: float(round(found.values[column])) for column in self.flow.columns.run}
+        fix(relaxation, low, high, runs)
+        try:
+            answer, made = whole_bags(self.flow, relaxation, relaxation.solve(), low, high)
+        except Dead:
+            return
+        self._offer(search, answer.known, made)
+        search.stop = "gap reached" if search.gap <= self.limits.gap else f"runs searched: {found.stop}"
 
     def _time_left(self) -> float:
         return self.limits.seconds - (time.perf_counter() - self.started)
