@@ -30,7 +30,10 @@ class LoadPart:
 
 @dataclass(frozen=True, slots=True)
 class CurveRow:
-    """One minute of a cycle, for the slowest bag: minutes from steam on [min], temperatures [°C], power [kW]."""
+    """A moment of a cycle, for the slowest bag: minutes from steam on [min], temperatures [°C], power [kW].
+
+    The power is the mean of the minute that ends then.
+    """
 
     minutes: float
     steam_c: float
@@ -168,8 +171,8 @@ def cycle_in(
     cool_in_place, cool_down, tail = _cool(around, steriliser, load, states, vessel_c, ambient)
     vent_h = steriliser.vent_min / 60
     ready = heat_up_h + programme.hold_h + vent_h + cool_in_place
-    curve = _curve(boil_up, power, start, trace, vent_h, tail)
-    cores = [start, *(row.core_c for row in curve)]
+    curve = _curve(boil_up, power, start, trace, boil_up / 60 + end_min, vent_h, tail)
+    cores = [row.core_c for row in by_minute(curve)]
     return Cycle(
         boiling_c=boiling,
         boil_up_h=boil_up / 3600,
@@ -293,29 +296,59 @@ def _in_place(
 
 
 def _curve(
-    boil_up: float, power: float, start: float, trace: Trace, vent_h: float, tail: _Tail
+    boil_up: float, power: float, start: float, trace: Trace, end_min: float, vent_h: float, tail: _Tail
 ) -> tuple[CurveRow, ...]:
-    """One row a minute: boil-up at full power, steam, vent, cooling."""
+    """About one row a minute: boil-up at full power, steam, vent, cooling; the phases keep their exact lengths."""
     rows = [CurveRow(float(k), start, start, start, start, power) for k in range(round(boil_up / 60))]
     offset = boil_up / 60
     columns = (trace.minutes, trace.vessel_c, trace.surface_c, trace.core_c, trace.mean_c, trace.element_kw)
     for minutes, vessel, surface, core, mean, kw in zip(*columns, strict=True):
         rows.append(CurveRow(offset + minutes, vessel, surface, core, mean, kw))
     last = rows[-1]
-    rows.extend(
-        CurveRow(last.minutes + k, tail.vessel_c, last.surface_c, last.core_c, last.mean_c, 0.0)
-        for k in range(1, round(60 * vent_h) + 1)
-    )
+    # The last row of the hold ends its whole minute; what follows counts from the hold's exact end.
+    after = [
+        CurveRow(end_min + passed, tail.vessel_c, last.surface_c, last.core_c, last.mean_c, 0.0)
+        for passed in _minutes_of(60 * vent_h)
+    ]
+    offset = end_min + 60 * vent_h
     for seconds, air, modes, amplitudes in (tail.in_place, tail.in_room):
-        offset = rows[-1].minutes
-        minutes = np.arange(1, ceil(seconds / STEP_S) + 1)
-        if not len(minutes):
-            continue
+        minutes = np.array(_minutes_of(seconds / STEP_S))
         left = np.exp(-np.outer(minutes * STEP_S, modes.rates)) * amplitudes
         cores, means = air - left @ modes.core, air - left @ modes.mean
         for minute, core, mean in zip(minutes.tolist(), cores.tolist(), means.tolist(), strict=True):
-            rows.append(CurveRow(offset + minute, air, mean, core, mean, 0.0))
-    return tuple(rows)
+            after.append(CurveRow(offset + minute, air, mean, core, mean, 0.0))
+        offset += seconds / STEP_S
+    return (*rows, *(row for row in after if row.minutes > last.minutes + 1e-6))
+
+
+def _minutes_of(length_min: float) -> list[float]:
+    """Every whole minute of a phase, and its end."""
+    whole = [float(k) for k in range(1, ceil(length_min - 1e-6))]
+    return [*whole, length_min] if length_min > 0 else whole
+
+
+def by_minute(curve: Sequence[CurveRow]) -> tuple[CurveRow, ...]:
+    """A curve at whole minutes from steam on, from 0 to its last.
+
+    Parameters
+    ----------
+    curve : sequence of CurveRow
+        Rows in the order of time; steps may be uneven where one phase ends and the next begins.
+
+    Returns
+    -------
+    tuple of CurveRow
+        Temperatures are linear between rows; power is that of the minute which holds the moment.
+    """
+    known = np.array([row.minutes for row in curve])
+    grid = np.arange(int(known[-1] + 1e-9) + 1, dtype=np.float64)
+    columns = [
+        np.interp(grid, known, [getattr(row, name) for row in curve]).tolist()
+        for name in ("steam_c", "surface_c", "core_c", "mean_c")
+    ]
+    holding = np.minimum(np.searchsorted(known, grid - 1e-9), len(known) - 1)
+    powers = [curve[index].element_kw for index in holding.tolist()]
+    return tuple(CurveRow(*values) for values in zip(grid.tolist(), *columns, powers, strict=True))
 
 
 def _balance_error(trace: Trace, states: Sequence[BagState], vessel: Vessel, start: float, vessel_c: float) -> float:

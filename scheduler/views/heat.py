@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from bisect import bisect_right
 from calendar import month_name
 from dataclasses import dataclass
 from typing import Any
@@ -9,7 +10,7 @@ from typing import Any
 from rich.console import Console
 
 from models.farm import Farm, Steriliser, Strain
-from models.thermal.cycle import Cycle
+from models.thermal.cycle import Cycle, by_minute
 from models.thermal.lethality import ORGANISMS
 from models.thermal.table import power_by_quarter
 from scheduler.tariff import energy_cost
@@ -71,14 +72,14 @@ def heat_document(answer: HeatAnswer) -> dict[str, Any]:
         "log_reduction": {name: round(value, 3) for name, value in cycle.log_reduction.items()},
         "curve": [
             {
-                "minutes": round(row.minutes, 2),
+                "minutes": row.minutes,
                 "steam_c": round(row.steam_c, 2),
                 "surface_c": round(row.surface_c, 2),
                 "core_c": round(row.core_c, 2),
                 "mean_c": round(row.mean_c, 2),
                 "element_kw": round(row.element_kw, 3),
             }
-            for row in cycle.curve
+            for row in by_minute(cycle.curve)
         ],
         "balance_error_pct": round(cycle.balance_error_pct, 6),
         "cautions": [*cycle.cautions, *SAFETY],
@@ -94,7 +95,8 @@ def show_heat(console: Console, answer: HeatAnswer) -> None:
     screen, cycle = Screen(console), answer.cycle
     farm, currency = answer.farm, answer.farm.site.currency
     programme = farm.programme_of(answer.strain)
-    screen.title(f"{farm.site.name}: {answer.bags} bags of {answer.strain.code} in {answer.steriliser.code}")
+    bags = "1 bag" if answer.bags == 1 else f"{answer.bags} bags"
+    screen.wrapped(f"{farm.site.name}: {bags} of {answer.strain.code} in {answer.steriliser.code}", style="bold")
     screen.wrapped(
         f"{answer.bags * farm.bag_of(answer.strain).wet_kg:,.0f} kg, {answer.element_kw:g} kW,"
         f" {month_name[answer.month]},"
@@ -102,19 +104,24 @@ def show_heat(console: Console, answer: HeatAnswer) -> None:
         f" coldest core for {programme.hold_h:g} h. Water boils at {cycle.boiling_c:.1f} °C here."
     )
     screen.heading("The cycle")
-    screen.line(f"{'phase':<34}{'hours':>8}{'from steam on':>16}{'clock':>8}{'core °C':>10}", "dim")
+    screen.line(
+        f"{'phase, and how it ends':<30}{'hours':>8}{'steam on +':>12}{'clock':>12}{'around':>9}{'core':>9}", "dim"
+    )
     passed = 0.0
     for name, hours in (
         ("boil-up of the generator", cycle.boil_up_h),
-        ("heat-up until the core is hot", cycle.heat_up_h - cycle.boil_up_h),
+        ("heat-up to a hot core", cycle.heat_up_h - cycle.boil_up_h),
         ("hold", cycle.hold_h),
         ("vent", cycle.vent_h),
         ("cooling in the steriliser", cycle.cool_in_place_h),
-        ("cooling in the cooling room", cycle.cool_down_h),
+        ("cooling in the room", cycle.cool_down_h),
     ):
         passed += hours
-        clock = _clock(answer.steam_on + round(60 * passed))
-        screen.line(f"{name:<34}{hours:>8.2f}{passed:>16.2f}{clock:>8}{_core_at(cycle, passed):>10.1f}")
+        around, core = _at(cycle, passed)
+        screen.line(
+            f"{name:<30}{hours:>8.2f}{f'{passed:.2f} h':>12}{_clock_and_day(answer.steam_on + round(60 * passed)):>12}"
+            f"{around:>6.1f} °C{core:>6.1f} °C"
+        )
     screen.line(f"{'out of the steriliser after':<34}{cycle.ready_to_unload_h:>8.2f} h", "bold")
     screen.line(f"{'cool enough to inoculate after':<34}{cycle.ready_to_inoculate_h:>8.2f} h", "bold")
     screen.heading("Energy and water")
@@ -137,6 +144,16 @@ def show_heat(console: Console, answer: HeatAnswer) -> None:
         screen.wrapped(note, "- ")
 
 
-def _core_at(cycle: Cycle, hours: float) -> float:
-    index = min(len(cycle.curve) - 1, max(0, round(60 * hours) - 1))
-    return cycle.curve[index].core_c
+def _clock_and_day(minutes: int) -> str:
+    """Clock time, with the days that have passed since steam on."""
+    days = minutes // 1440
+    return f"{_clock(minutes)} +{days} d" if days else _clock(minutes)
+
+
+def _at(cycle: Cycle, hours: float) -> tuple[float, float]:
+    """What surrounds the bags at the end of a phase, and the core between two rows [°C]."""
+    minutes = 60 * hours
+    index = max(1, bisect_right(cycle.curve, minutes + 1e-6, key=lambda row: row.minutes))
+    before, after = cycle.curve[index - 1], cycle.curve[min(index, len(cycle.curve) - 1)]
+    share = (minutes - before.minutes) / (after.minutes - before.minutes) if after is not before else 0.0
+    return before.steam_c, before.core_c + share * (after.core_c - before.core_c)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
 from typing import Any
 
 import pytest
@@ -9,7 +10,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from models.farm import Farm
-from models.thermal.cycle import Cycle, LoadPart, steam_cycle
+from models.thermal.cycle import CurveRow, Cycle, LoadPart, by_minute, steam_cycle
 from models.thermal.errors import ThermalError
 from models.thermal.substrate import heat_capacity
 from models.thermal.table import cycle_row, power_by_quarter
@@ -43,6 +44,21 @@ def test_without_losses_heat_up_is_heat_over_power(power: float) -> None:
     ideal = 100 * 2 * heat_capacity(60, 1.45) * (90 - 15) / power / 3600
     # The largest conductivity the file allows still leaves minutes of lag; they are the same at every power.
     assert ideal <= found.heat_up_h <= ideal + 0.35
+
+
+@pytest.mark.parametrize(("power", "bags", "start"), [(2.5, 20, 15.0), (6.0, 100, 5.0), (12.0, 300, 30.0)])
+def test_lumped_limit_is_exact(power: float, bags: int, start: float) -> None:
+    """With no lag inside the bag, beyond what the file allows, heat-up after boil-up is Q / P."""
+    farm = tiny(
+        steriliser=[PLAIN | LOSSLESS | {"element_kw": power}],
+        recipe=[{"code": "mix", "water_pct": 60, "density_kg_m3": 500}],
+    )
+    recipe = farm.recipe[0].model_copy(update={"conductivity_w_m_k": 1e4})
+    found = steam_cycle(
+        farm, farm.steriliser[0], farm.programme[0], [LoadPart(recipe, farm.bag[0], bags)], month=1, start_c=start
+    )
+    ideal = bags * 2 * heat_capacity(60, recipe.dry_cp_kj_kg_k) * (90 - start) / power / 3600
+    assert found.heat_up_h - found.boil_up_h == pytest.approx(ideal, rel=0.002)
 
 
 def test_heat_of_a_load_by_common_practice() -> None:
@@ -119,6 +135,47 @@ def test_hold_takes_what_is_lost() -> None:
     )
     last = next(row for row in reversed(found.curve) if row.element_kw > 0)
     assert last.element_kw == pytest.approx(0.005 * (found.boiling_c - 15), rel=1e-4)
+
+
+@settings(max_examples=30, deadline=None)
+@given(bags=st.integers(10, 200), power=st.floats(4, 20), vent=st.integers(0, 45), hold=st.floats(0.1, 12))
+def test_curve_follows_the_phases(bags: int, power: float, vent: int, hold: float) -> None:
+    found = cycle(
+        bags=bags,
+        steriliser={"element_kw": power, "vent_min": vent},
+        programme=[{"code": "hot", "target_core_c": 90, "hold_h": hold}],
+    )
+    times = [row.minutes for row in found.curve]
+    assert all(a < b <= a + 2.5 for a, b in pairwise(times))
+    assert times[-1] == pytest.approx(60 * found.ready_to_inoculate_h)
+    assert found.curve[-1].core_c == pytest.approx(28, abs=0.01)
+    rows = by_minute(found.curve)
+    assert [row.minutes for row in rows] == list(range(int(60 * found.ready_to_inoculate_h) + 1))
+    hot = next(row.minutes for row in rows if row.core_c >= 90)
+    assert 0 <= hot - 60 * found.heat_up_h < 1.01
+    ended = 60 * (found.heat_up_h + hold)
+    assert all(row.element_kw == 0 for row in rows if row.minutes > ended + 1)
+    assert sum(row.element_kw for row in rows) / 60 == pytest.approx(found.energy_kwh, abs=power / 20)
+
+
+def test_by_minute_is_linear_between_rows() -> None:
+    rows = by_minute(
+        [CurveRow(0, 10, 10, 10, 10, 5), CurveRow(2.5, 60, 35, 15, 20, 3), CurveRow(3.2, 60, 35, 15, 20, 0)]
+    )
+    assert [row.minutes for row in rows] == [0, 1, 2, 3]
+    assert [row.steam_c for row in rows] == pytest.approx([10, 30, 50, 60])
+    assert [row.core_c for row in rows] == pytest.approx([10, 12, 14, 15])
+    assert [row.element_kw for row in rows] == [5, 3, 3, 0]
+
+
+def test_lower_start_and_altitude_take_longer() -> None:
+    farm = tiny()
+    load = [LoadPart(farm.recipe[0], farm.bag[0], 10)]
+    args = (farm, farm.steriliser[0], farm.programme[0], load)
+    assert steam_cycle(*args, month=1, start_c=5).heat_up_h > steam_cycle(*args, month=1, start_c=25).heat_up_h
+    high = {"name": "High", "timezone": "Europe/Dublin", "ambient_c": 15, "altitude_m": 1500}
+    assert cycle(site=high).boiling_c < cycle().boiling_c - 4
+    assert cycle(site=high).heat_up_h > cycle().heat_up_h
 
 
 def two_kinds() -> Farm:
