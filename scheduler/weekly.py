@@ -87,7 +87,7 @@ def _add_making(farm: Farm, plan: Plan, clock: FarmClock, rows: dict[Week, WeekR
             strain = farm.strain_called(code)
             bag = farm.bag_of(strain)
             here.bags[code] += bags
-            here.money -= bags * (bag.wet_kg * farm.recipe_of(strain).cost_per_kg + bag.cost)
+            here.money -= bags * (bag.wet_kg * farm.recipe_of(strain).price_per_kg + bag.cost)
     for event in plan.inoculations:
         if not event.before:
             strain = farm.strain_called(strain_of[event.lot])

@@ -40,6 +40,8 @@ class Steriliser(FarmModel):
     """Whether condensate flows back to the generator."""
     surface_w_m2_k: Positive = 200.0
     """Heat transfer from steam to a bag's surface [W/m² K]."""
+    stack_factor: Annotated[float, Field(ge=1, le=8, allow_inf_nan=False)] = 1.0
+    """How many times as long as a bag the solid stacks are, where bags touch [-]; 1: steam between all bags."""
     loads: tuple[Annotated[float, Field(gt=0, le=1, allow_inf_nan=False)], ...] = (0.5, 0.75, 1.0)
     """Load steps the planner may choose from [share of places], rising."""
     unload_below_c: Annotated[float, Field(gt=0, le=130, allow_inf_nan=False)] = 60.0

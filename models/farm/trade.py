@@ -14,6 +14,8 @@ class Limits(FarmModel):
 
     mix_to_steam_h: Positive = 6.0
     """Most time from the start of mixing until steam is on [h]; later the mix sours."""
+    steam_again_within_h: Positive = 8.0
+    """Longest break in a steam run after which the load is steamed again [h]; longer, and it is discarded."""
     cooled_to_inoculate_h: Positive = 48.0
     """Most time from cool to inoculated [h]."""
     inoculate_below_c: Temperature = 28.0

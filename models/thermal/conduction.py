@@ -100,6 +100,15 @@ class Side:
     length_m: float
     round_: bool
 
+    def central_means(self, share: float) -> Floats:
+        """Means of the modes over the central share of the length [-, by root]; all of it gives ``means``."""
+        x = self.roots * share
+        if not self.round_:
+            return np.asarray(np.sin(x) / x)
+        from scipy.special import j1
+
+        return np.asarray(2 * j1(x) / x)
+
 
 def plate_side(half_m: float, biot: float, count: int = MODES_A_SIDE) -> Side:
     """Modes of a plate of half thickness ``half_m`` [m]."""
@@ -144,6 +153,13 @@ class Modes:
         """The same for the mean temperature [-]."""
         return float(self.mean @ np.exp(-self.rates * seconds))
 
+    def central_mean(self, stack_factor: float) -> Floats:
+        """Share of each mode in the deficit of the innermost bag of a stack [-, by mode]; 1: the whole body's mean."""
+        weights = np.ones(1)
+        for side in self.sides:
+            weights = np.multiply.outer(weights, side.weights * side.central_means(1 / stack_factor)).ravel()
+        return weights
+
 
 def product_modes(sides: tuple[Side, ...], diffusivity_m2_s: float) -> Modes:
     """Modes of a body that is the product of its sides (finite cylinder, brick)."""
@@ -157,7 +173,9 @@ def product_modes(sides: tuple[Side, ...], diffusivity_m2_s: float) -> Modes:
 
 
 @lru_cache(maxsize=512)
-def bag_modes(bag: Bag, diffusivity_m2_s: float, conductivity_w_m_k: float, surface_w_m2_k: float) -> Modes:
+def bag_modes(
+    bag: Bag, diffusivity_m2_s: float, conductivity_w_m_k: float, surface_w_m2_k: float, stack_factor: float = 1.0
+) -> Modes:
     """Modes of a bag in surroundings with a surface coefficient; all faces see them.
 
     Parameters
@@ -168,30 +186,39 @@ def bag_modes(bag: Bag, diffusivity_m2_s: float, conductivity_w_m_k: float, surf
         Of the filled bag [m²/s], [W/m K].
     surface_w_m2_k : float
         Surface coefficient, may be infinite [W/m² K].
+    stack_factor : float
+        How many times as long the sides of the conducting body are as those of one bag, where bags touch [-].
+
+    Notes
+    -----
+    Bags stacked without gaps shade each other. They are taken for bodies of the bag's shape with every side
+    ``stack_factor`` times as long and nothing but substrate inside: no steam between the bags, no resistance where
+    they touch. Time then goes with the factor's square where the surface does not limit.
     """
 
     def biot(half_m: float) -> float:
         return surface_w_m2_k * half_m / conductivity_w_m_k
 
+    longer = stack_factor / 2000
     if bag.diameter_mm is not None:
-        radius, half = bag.diameter_mm / 2000, bag.height_mm / 2000
+        radius, half = bag.diameter_mm * longer, bag.height_mm * longer
         return product_modes((cylinder_side(radius, biot(radius)), plate_side(half, biot(half))), diffusivity_m2_s)
     assert bag.length_mm is not None  # noqa: S101  (held by the farm file)
     assert bag.width_mm is not None  # noqa: S101
-    halves = [length / 2000 for length in (bag.length_mm, bag.width_mm, bag.height_mm)]
+    halves = [length * longer for length in (bag.length_mm, bag.width_mm, bag.height_mm)]
     sides = tuple(plate_side(half, biot(half), count=9) for half in halves)
     return product_modes(sides, diffusivity_m2_s)
 
 
 def project(state: Floats, old: Modes, new: Modes) -> Floats:
-    """The state of the modes after the surface coefficient has changed.
+    """The state of the modes after the surface coefficient has changed, or after a stack was taken apart.
 
     Parameters
     ----------
     state : ndarray
         Amplitudes in the old modes: the deficit is the sum of amplitude times weight times shape [K, by mode].
     old, new : Modes
-        Modes of the same body under two surface coefficients.
+        Modes of the same body under two surface coefficients; the new one may be the innermost bag of a stack.
 
     Returns
     -------
@@ -200,7 +227,8 @@ def project(state: Floats, old: Modes, new: Modes) -> Floats:
 
     Notes
     -----
-    Both sets are orthogonal on the body; the overlap of one direction is integrated by Gauss-Legendre quadrature.
+    The new set is orthogonal on the new body; the overlap of one direction is integrated by Gauss-Legendre
+    quadrature. Of a smaller new body the old field is taken round its centre, where a stack is hottest.
     """
     shape = tuple(len(side.roots) for side in old.sides)
     field = (state * old.core).reshape(shape)
@@ -214,11 +242,12 @@ def _overlap(old: Side, new: Side) -> Floats:
     """Expansion of each old mode shape in the new ones, along one direction [new, old]."""
     nodes, quadrature = np.polynomial.legendre.leggauss(96)
     x, weight = (nodes + 1) / 2, quadrature / 2
+    inner = x * new.length_m / old.length_m
     if old.round_:
         from scipy.special import j0
 
-        shape_old, shape_new, weight = j0(np.outer(old.roots, x)), j0(np.outer(new.roots, x)), weight * x
+        shape_old, shape_new, weight = j0(np.outer(old.roots, inner)), j0(np.outer(new.roots, x)), weight * x
     else:
-        shape_old, shape_new = np.cos(np.outer(old.roots, x)), np.cos(np.outer(new.roots, x))
+        shape_old, shape_new = np.cos(np.outer(old.roots, inner)), np.cos(np.outer(new.roots, x))
     norms = (shape_new**2) @ weight
     return np.asarray(((shape_new * weight) @ shape_old.T) / norms[:, None])

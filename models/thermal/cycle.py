@@ -8,39 +8,21 @@ from math import ceil, isinf
 
 import numpy as np
 
-from models.farm import Bag, Farm, Limits, Programme, Recipe, Room, Site, Steriliser
-from models.thermal.conduction import Floats, Modes, bag_modes, project
-from models.thermal.cooling import seconds_until, still_air_coefficient
+from models.farm import Farm, Limits, Programme, Room, Site, Steriliser
+from models.thermal.curve import CurveRow, by_minute, joined, steamed_rows
 from models.thermal.errors import ThermalError
+from models.thermal.finish import CoolingPlace, finish
 from models.thermal.generator import boil_up_seconds, steam_share
-from models.thermal.lethality import ORGANISMS, log_reduction
+from models.thermal.lethality import ORGANISMS, equivalent_minutes, log_reduction
+from models.thermal.load import LoadPart, bag_states
 from models.thermal.steam import boiling_point, latent_heat, same_kill_factor
-from models.thermal.steaming import STEP_S, BagState, Trace, Vessel, heat_up, hold
-from models.thermal.substrate import WATER_CP_KJ_KG_K, bag_heat_capacity, diffusivity
+from models.thermal.steaming import BagState, Trace, Vessel, heat_up, hold
+from models.thermal.substrate import WATER_CP_KJ_KG_K
 
-
-@dataclass(frozen=True, slots=True)
-class LoadPart:
-    """So many bags of one kind in a load."""
-
-    recipe: Recipe
-    bag: Bag
-    bags: int
-
-
-@dataclass(frozen=True, slots=True)
-class CurveRow:
-    """A moment of a cycle, for the slowest bag: minutes from steam on [min], temperatures [°C], power [kW].
-
-    The power is the mean of the minute that ends then.
-    """
-
-    minutes: float
-    steam_c: float
-    surface_c: float
-    core_c: float
-    mean_c: float
-    element_kw: float
+REFERENCES_C = {"121.1 °C": 121.1, "100 °C": 100.0}
+"""Temperatures at which the weight of a cycle is told in minutes, at a z of 10 °C."""
+BELOW_BOILING_K = 0.05
+"""A core cannot be brought nearer than this to the temperature of the steam round it in finite time [K]."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,7 +30,9 @@ class Cycle:
     """A cycle as worked out: hours [h], energy [kWh], temperatures [°C], heat [MJ], water [kg].
 
     ``heat_up_h`` counts from steam on and includes ``boil_up_h``; ``ready_to_unload_h`` and ``ready_to_inoculate_h``
-    count from steam on; ``energy_kwh`` from steam on to the end of the hold; ``log_reduction`` is at the slowest core.
+    count from steam on; ``energy_kwh`` from steam on to the end of the hold; ``condensate_kg`` is the steam that
+    condensed and ``water_kg`` what was fed to the generator for it; ``log_reduction`` and ``equivalent_min`` (z 10 °C)
+    are at the slowest core.
     """
 
     boiling_c: float
@@ -63,9 +47,11 @@ class Cycle:
     energy_kwh: float
     heat_into_load_mj: float
     condensate_kg: float
+    water_kg: float
     mean_hold_kw: float
     hold_duty: float
     log_reduction: dict[str, float]
+    equivalent_min: dict[str, float]
     curve: tuple[CurveRow, ...]
     balance_error_pct: float
     cautions: tuple[str, ...]
@@ -142,61 +128,90 @@ def cycle_in(
     start_c: float | None = None,
 ) -> Cycle:
     """`steam_cycle` with the farm reduced to what matters."""
-    if not load or any(part.bags <= 0 for part in load):
-        raise ThermalError("a load of at least one bag was expected")
-    site, ambient = around.site, around.site.ambient_in(month)
-    power = steriliser.element_kw if element_kw is None else element_kw
-    start = ambient if start_c is None else start_c
-    boiling = boiling_point(site.altitude_m, steriliser.gauge_kpa, steriliser.air_fraction)
-    if programme.target_core_c >= boiling - 0.05:
-        raise ThermalError(_above_boiling(around, programme, boiling))
-    vessel = _vessel(site, steriliser, power, boiling, ambient)
-    boil_up = _boil_up(site, steriliser, power, boiling, ambient)
-    states = [_bag_state(part, steriliser.surface_w_m2_k) for part in load]
-    trace = Trace()
-    steaming_min = heat_up(vessel, states, programme.target_core_c, start, trace)
-    heat_up_h = boil_up / 3600 + steaming_min / 60
+    setting = setting_of(around, steriliser, programme, month=month, element_kw=element_kw, start_c=start_c)
+    states, trace, vessel = bag_states(load, steriliser), Trace(), setting.vessel
+    steaming_min = heat_up(vessel, states, programme.target_core_c, setting.start_c, trace)
     hold_from = len(trace.minutes)
     # The hold starts within the last minute of the heat-up; whole minutes follow to its end.
     end_min = steaming_min + 60 * programme.hold_h
     vessel_c = hold(vessel, states, max(0, ceil(end_min - 1e-9) - hold_from), trace.vessel_c[-1], trace)
     powers = np.array(trace.element_kw)
-    last_share = 1.0 - (len(powers) - end_min) if len(powers) > end_min else 1.0
     weights = np.ones(len(powers))
-    weights[-1] = last_share
-    energy = power * boil_up / 3600 + float(powers @ weights) / 60
+    weights[-1] = min(1.0, 1.0 - (len(powers) - end_min))
     hold_powers = powers[hold_from:] if len(powers) > hold_from else powers[-1:]
-    load_heat = sum(state.capacity_kj_k * (state.mean_c(vessel_c) - start) for state in states)
-    latent = latent_heat(boiling)
-    cool_in_place, cool_down, tail = _cool(around, steriliser, load, states, vessel_c, ambient)
-    vent_h = steriliser.vent_min / 60
-    ready = heat_up_h + programme.hold_h + vent_h + cool_in_place
-    curve = _curve(boil_up, power, start, trace, boil_up / 60 + end_min, vent_h, tail)
+    balance = _balance_error(trace, states, vessel, setting.start_c, vessel_c)
+    load_heat = sum(state.capacity_kj_k * (state.mean_c(vessel_c) - setting.start_c) for state in states)
+    heat_up_h = setting.boil_up_min / 60 + steaming_min / 60
+    after = finish(
+        steriliser, load, states, vessel_c, setting.open_c, vessel.ambient_c, setting.place,
+        setting.boil_up_min + end_min,
+    )  # fmt: skip
+    ready = heat_up_h + programme.hold_h + steriliser.vent_min / 60 + after.in_place_h
+    curve = joined(steamed_rows(setting.boil_up_min, vessel.element_kw, setting.start_c, trace), after.rows)
     cores = [row.core_c for row in by_minute(curve)]
+    condensate = trace.delivered_kj / latent_heat(vessel.boil_c)
     return Cycle(
-        boiling_c=boiling,
-        boil_up_h=boil_up / 3600,
+        boiling_c=vessel.boil_c,
+        boil_up_h=setting.boil_up_min / 60,
         heat_up_h=heat_up_h,
         hold_h=programme.hold_h,
-        vent_h=vent_h,
-        cool_in_place_h=cool_in_place,
-        cool_down_h=cool_down,
+        vent_h=steriliser.vent_min / 60,
+        cool_in_place_h=after.in_place_h,
+        cool_down_h=after.in_room_h,
         ready_to_unload_h=ready,
-        ready_to_inoculate_h=ready + cool_down,
-        energy_kwh=energy,
+        ready_to_inoculate_h=ready + after.in_room_h,
+        energy_kwh=vessel.element_kw * setting.boil_up_min / 60 + float(powers @ weights) / 60,
         heat_into_load_mj=load_heat / 1000,
-        condensate_kg=trace.delivered_kj / latent,
+        condensate_kg=condensate,
+        water_kg=0.0 if steriliser.condensate_return else condensate,
         mean_hold_kw=float(hold_powers.mean()),
-        hold_duty=float(hold_powers.mean()) / power,
+        hold_duty=float(hold_powers.mean()) / vessel.element_kw,
         log_reduction={organism.name: log_reduction(cores, 1.0, organism) for organism in ORGANISMS},
+        equivalent_min={name: equivalent_minutes(cores, 1.0, at) for name, at in REFERENCES_C.items()},
         curve=curve,
-        balance_error_pct=_balance_error(trace, states, vessel, start, vessel_c),
-        cautions=_cautions(around, boiling, heat_up_h, power),
+        balance_error_pct=balance,
+        cautions=_cautions(around, vessel.boil_c, heat_up_h, vessel.element_kw),
     )
 
 
-def _vessel(site: Site, steriliser: Steriliser, power: float, boiling: float, ambient: float) -> Vessel:
-    return Vessel(
+@dataclass(frozen=True, slots=True)
+class Setting:
+    """A steriliser set up for a load: the vessel, boil-up [min], start [°C], steam at the air's pressure [°C], cooling.
+
+    ``generator_kj_k`` and ``generator_loss_w_k`` are the generator's heat capacity [kJ/K] and loss [W/K],
+    ``feed_c`` what it starts at [°C].
+    """
+
+    vessel: Vessel
+    boil_up_min: float
+    start_c: float
+    open_c: float
+    place: CoolingPlace
+    generator_kj_k: float
+    generator_loss_w_k: float
+    feed_c: float
+
+
+def setting_of(
+    around: Surroundings,
+    steriliser: Steriliser,
+    programme: Programme,
+    *,
+    month: int,
+    element_kw: float | None = None,
+    start_c: float | None = None,
+) -> Setting:
+    """What a cycle starts from; see `steam_cycle` for parameters and refusals."""
+    site, ambient = around.site, around.site.ambient_in(month)
+    power = steriliser.element_kw if element_kw is None else element_kw
+    start = ambient if start_c is None else start_c
+    boiling = boiling_point(site.altitude_m, steriliser.gauge_kpa, steriliser.air_fraction)
+    target = programme.target_core_c
+    if start >= target:
+        raise ThermalError(f"a load below the target of {target:g} °C at steam on was expected; found {start:g} °C")
+    if target >= boiling - BELOW_BOILING_K:
+        raise ThermalError(_above_boiling(around, programme, boiling))
+    vessel = Vessel(
         element_kw=power,
         generator_loss_kw=steriliser.generator_loss_w_per_k * (boiling - ambient) / 1000,
         steam_share=steam_share(boiling, site.feed_water_c, condensate_return=steriliser.condensate_return),
@@ -205,18 +220,19 @@ def _vessel(site: Site, steriliser: Steriliser, power: float, boiling: float, am
         ambient_c=ambient,
         boil_c=boiling,
     )
-
-
-def _boil_up(site: Site, steriliser: Steriliser, power: float, boiling: float, ambient: float) -> float:
-    """Seconds until the generator boils; its water and metal start at the feed temperature [s]."""
     capacity = (
         steriliser.generator_water_kg * WATER_CP_KJ_KG_K + steriliser.generator_metal_kg * steriliser.metal_cp_kj_kg_k
     )
     seconds = boil_up_seconds(capacity, power, steriliser.generator_loss_w_per_k, site.feed_water_c, boiling, ambient)
     if isinf(seconds):
-        loss = steriliser.generator_loss_w_per_k * (boiling - ambient) / 1000
+        loss = vessel.generator_loss_kw
         raise ThermalError(f"the generator never boils: it loses {loss:.2f} kW of the element's {power:g} kW")
-    return seconds
+    room_c = ambient if around.room is None else around.room.temp_c
+    place = CoolingPlace(room_c, None if around.room is None else around.room.air_w_m2_k, around.inoculate_below_c)
+    open_c = boiling_point(site.altitude_m, 0.0, steriliser.air_fraction)
+    return Setting(
+        vessel, seconds / 60, start, open_c, place, capacity, steriliser.generator_loss_w_per_k, site.feed_water_c
+    )
 
 
 def _above_boiling(around: Surroundings, programme: Programme, boiling: float) -> str:
@@ -228,127 +244,6 @@ def _above_boiling(around: Surroundings, programme: Programme, boiling: float) -
         f" {programme.hold_h * factor:.1f} h instead of {programme.hold_h:g} h gives the same kill at z = 10 °C"
         " (indicative, not validated)"
     )
-
-
-def _bag_state(part: LoadPart, surface_w_m2_k: float) -> BagState:
-    capacity = part.bags * part.bag.wet_kg * bag_heat_capacity(part.recipe)
-    modes = bag_modes(part.bag, diffusivity(part.recipe, part.bag), part.recipe.conductivity_w_m_k, surface_w_m2_k)
-    return BagState(modes, capacity, part.bags * _area(part.bag) * surface_w_m2_k, np.zeros(len(modes.rates)))
-
-
-def _area(bag: Bag) -> float:
-    """Surface of a bag [m²]."""
-    if bag.diameter_mm is not None:
-        radius, height = bag.diameter_mm / 2000, bag.height_mm / 1000
-        return 2 * np.pi * radius * (radius + height)
-    assert bag.length_mm is not None  # noqa: S101  (held by the farm file)
-    assert bag.width_mm is not None  # noqa: S101
-    a, b, c = bag.length_mm / 1000, bag.width_mm / 1000, bag.height_mm / 1000
-    return 2 * (a * b + b * c + a * c)
-
-
-@dataclass(frozen=True, slots=True)
-class _Tail:
-    """The slowest bag after the hold: in place, then in the room; (seconds, air, modes, amplitudes) of each part."""
-
-    in_place: tuple[float, float, Modes, Floats]
-    in_room: tuple[float, float, Modes, Floats]
-    vessel_c: float
-
-
-def _cool(
-    around: Surroundings, steriliser: Steriliser, load: Sequence[LoadPart], states: Sequence[BagState], vessel_c: float,
-    ambient: float,
-) -> tuple[float, float, _Tail]:  # fmt: skip
-    """Hours in place until the warmest mean is low enough, and hours in the room until the slowest core is."""
-    steps = [_in_place(steriliser, part, state, vessel_c, ambient) for part, state in zip(load, states, strict=True)]
-    seconds = max(step[0] for step in steps)
-    room_c = around.site.ambient_c if around.room is None else around.room.temp_c
-    air = ambient if around.room is None or isinstance(room_c, tuple) else room_c
-    finished = []
-    for part, (_, modes, amplitudes) in zip(load, steps, strict=True):
-        after = amplitudes * np.exp(-modes.rates * seconds)
-        surface = ambient - float(modes.mean @ after)
-        given = None if around.room is None else around.room.air_w_m2_k
-        height = part.bag.height_mm / 1000
-        h = round(given or still_air_coefficient((surface + around.inoculate_below_c) / 2, air, height), 1)
-        room_modes = bag_modes(part.bag, diffusivity(part.recipe, part.bag), part.recipe.conductivity_w_m_k, h)
-        moved = project(after, modes, room_modes) + (air - ambient)
-        wait = seconds_until(
-            room_modes, moved, room_modes.core, air, around.inoculate_below_c, "the core in the cooling room"
-        )
-        finished.append((wait, modes, amplitudes, room_modes, moved))
-    wait, modes, amplitudes, room_modes, moved = max(finished, key=lambda item: item[0])
-    tail = _Tail((seconds, ambient, modes, amplitudes), (wait, air, room_modes, moved), vessel_c)
-    return seconds / 3600, wait / 3600, tail
-
-
-def _in_place(
-    steriliser: Steriliser, part: LoadPart, state: BagState, vessel_c: float, ambient: float
-) -> tuple[float, Modes, Floats]:
-    middle = (vessel_c + steriliser.unload_below_c) / 2
-    h = round(still_air_coefficient(middle, ambient, part.bag.height_mm / 1000), 1)
-    modes = bag_modes(part.bag, diffusivity(part.recipe, part.bag), part.recipe.conductivity_w_m_k, h)
-    amplitudes = project(state.amplitudes, state.modes, modes) + (ambient - vessel_c)
-    what = "the load in the steriliser"
-    seconds = seconds_until(modes, amplitudes, modes.mean, ambient, steriliser.unload_below_c, what)
-    return seconds, modes, amplitudes
-
-
-def _curve(
-    boil_up: float, power: float, start: float, trace: Trace, end_min: float, vent_h: float, tail: _Tail
-) -> tuple[CurveRow, ...]:
-    """About one row a minute: boil-up at full power, steam, vent, cooling; the phases keep their exact lengths."""
-    rows = [CurveRow(float(k), start, start, start, start, power) for k in range(round(boil_up / 60))]
-    offset = boil_up / 60
-    columns = (trace.minutes, trace.vessel_c, trace.surface_c, trace.core_c, trace.mean_c, trace.element_kw)
-    for minutes, vessel, surface, core, mean, kw in zip(*columns, strict=True):
-        rows.append(CurveRow(offset + minutes, vessel, surface, core, mean, kw))
-    last = rows[-1]
-    # The last row of the hold ends its whole minute; what follows counts from the hold's exact end.
-    after = [
-        CurveRow(end_min + passed, tail.vessel_c, last.surface_c, last.core_c, last.mean_c, 0.0)
-        for passed in _minutes_of(60 * vent_h)
-    ]
-    offset = end_min + 60 * vent_h
-    for seconds, air, modes, amplitudes in (tail.in_place, tail.in_room):
-        minutes = np.array(_minutes_of(seconds / STEP_S))
-        left = np.exp(-np.outer(minutes * STEP_S, modes.rates)) * amplitudes
-        cores, means = air - left @ modes.core, air - left @ modes.mean
-        for minute, core, mean in zip(minutes.tolist(), cores.tolist(), means.tolist(), strict=True):
-            after.append(CurveRow(offset + minute, air, mean, core, mean, 0.0))
-        offset += seconds / STEP_S
-    return (*rows, *(row for row in after if row.minutes > last.minutes + 1e-6))
-
-
-def _minutes_of(length_min: float) -> list[float]:
-    """Every whole minute of a phase, and its end."""
-    whole = [float(k) for k in range(1, ceil(length_min - 1e-6))]
-    return [*whole, length_min] if length_min > 0 else whole
-
-
-def by_minute(curve: Sequence[CurveRow]) -> tuple[CurveRow, ...]:
-    """A curve at whole minutes from steam on, from 0 to its last.
-
-    Parameters
-    ----------
-    curve : sequence of CurveRow
-        Rows in the order of time; steps may be uneven where one phase ends and the next begins.
-
-    Returns
-    -------
-    tuple of CurveRow
-        Temperatures are linear between rows; power is that of the minute which holds the moment.
-    """
-    known = np.array([row.minutes for row in curve])
-    grid = np.arange(int(known[-1] + 1e-9) + 1, dtype=np.float64)
-    columns = [
-        np.interp(grid, known, [getattr(row, name) for row in curve]).tolist()
-        for name in ("steam_c", "surface_c", "core_c", "mean_c")
-    ]
-    holding = np.minimum(np.searchsorted(known, grid - 1e-9), len(known) - 1)
-    powers = [curve[index].element_kw for index in holding.tolist()]
-    return tuple(CurveRow(*values) for values in zip(grid.tolist(), *columns, powers, strict=True))
 
 
 def _balance_error(trace: Trace, states: Sequence[BagState], vessel: Vessel, start: float, vessel_c: float) -> float:

@@ -67,5 +67,32 @@ def log_reduction(temps_c: Sequence[float], step_min: float, organism: Organism)
     >>> round(log_reduction([100.0, 100.0, 100.0], 1.0, Organism("x", 5.0, 90.0, 10.0, "")), 6)
     4.0
     """
-    rates = [10 ** ((temp - organism.at_c) / organism.z_c) / organism.d_min for temp in temps_c]
-    return step_min * (sum(rates) - (rates[0] + rates[-1]) / 2) if rates else 0.0
+    return equivalent_minutes(temps_c, step_min, organism.at_c, organism.z_c) / organism.d_min
+
+
+def equivalent_minutes(temps_c: Sequence[float], step_min: float, at_c: float, z_c: float = 10.0) -> float:
+    """Minutes at a reference temperature that weigh as much as a temperature record.
+
+    Parameters
+    ----------
+    temps_c : sequence of float
+        Temperatures at equal steps of at most one minute [°C].
+    step_min : float
+        Length of a step [min].
+    at_c, z_c : float
+        Reference temperature and z [°C]; 121.1 and 10 give what is called F0.
+
+    Returns
+    -------
+    float
+        Integral of 10^((T - T_ref) / z) dt [min]; indicative only below 105 °C, as for `log_reduction`.
+
+    Examples
+    --------
+    An hour at 100 °C weighs as much as 0.466 minutes at 121.1 °C:
+
+    >>> round(equivalent_minutes([100.0] * 61, 1.0, 121.1), 3)
+    0.466
+    """
+    weights = [10 ** ((temp - at_c) / z_c) for temp in temps_c]
+    return step_min * (sum(weights) - (weights[0] + weights[-1]) / 2) if weights else 0.0

@@ -107,8 +107,15 @@ def _never(vessel: Vessel, bags: Sequence[BagState], target_c: float, vessel_c: 
     )
 
 
-def step(vessel: Vessel, bags: Sequence[BagState], vessel_c: float, trace: Trace) -> float:
-    """One minute of steam; the new vessel temperature [°C]."""
+def step(
+    vessel: Vessel, bags: Sequence[BagState], vessel_c: float, trace: Trace, steam_kw: float | None = None
+) -> float:
+    """One minute of steam; the new vessel temperature [°C].
+
+    ``steam_kw`` is what the steam can bring in that minute, in place of what the element gives [kW]; without any the
+    vessel cools.
+    """
+    available = vessel.steam_kw if steam_kw is None else steam_kw
     decays = [np.exp(-state.modes.rates * STEP_S) for state in bags]
     gains = [(1 - decay) / (state.modes.rates * STEP_S) for decay, state in zip(decays, bags, strict=True)]
     fixed = slope = 0.0
@@ -121,7 +128,7 @@ def step(vessel: Vessel, bags: Sequence[BagState], vessel_c: float, trace: Trace
     loss_before = vessel.loss_kw_k * (vessel_c - vessel.ambient_c) * STEP_S
     # heat needed for a rise x: slope x + fixed + loss_before + loss slope x / 2
     full = slope + vessel.loss_kw_k * STEP_S / 2
-    rise = (vessel.steam_kw * STEP_S - fixed - loss_before) / full
+    rise = (available * STEP_S - fixed - loss_before) / full
     rise = min(rise, vessel.boil_c - vessel_c)
     heat = max(0.0, full * rise + fixed + loss_before)
     for state, decay, gain in zip(bags, decays, gains, strict=True):

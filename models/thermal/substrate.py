@@ -41,7 +41,7 @@ def heat_capacity(water_pct: float, dry_cp_kj_kg_k: float, water_cp_kj_kg_k: flo
 
 def bag_heat_capacity(recipe: Recipe) -> float:
     """Heat capacity of a recipe as it goes into the bag [kJ/kg K]."""
-    return heat_capacity(recipe.water_pct, recipe.dry_cp_kj_kg_k)
+    return heat_capacity(recipe.water_pct, recipe.dry_heat_capacity)
 
 
 def diffusivity(recipe: Recipe, bag: Bag) -> float:

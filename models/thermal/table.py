@@ -8,7 +8,8 @@ from functools import lru_cache
 from math import ceil
 
 from models.farm import Bag, Farm, Programme, Recipe, Steriliser
-from models.thermal.cycle import Cycle, LoadPart, Surroundings, cycle_in
+from models.thermal.cycle import Cycle, Surroundings, cycle_in
+from models.thermal.load import LoadPart
 
 QUARTER_MIN = 15
 

@@ -10,7 +10,7 @@ import typer
 
 if TYPE_CHECKING:
     from models.farm import Farm
-    from models.thermal.cycle import LoadPart
+    from models.thermal.load import LoadPart
 
 
 def heat(
@@ -86,7 +86,7 @@ def _choose(option: str, code: str | None, codes: list[str]) -> str:
 
 
 def _load(farm: Farm, strain: str, bags: int) -> list[LoadPart]:
-    from models.thermal.cycle import LoadPart
+    from models.thermal.load import LoadPart
 
     card = farm.strain_called(strain)
     return [LoadPart(farm.recipe_of(card), farm.bag_of(card), bags)]

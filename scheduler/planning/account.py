@@ -128,7 +128,7 @@ def account_of(
         for code, bags in run.bags.items():
             strain = farm.strain_called(code)
             bag = farm.bag_of(strain)
-            materials += bags * (bag.wet_kg * farm.recipe_of(strain).cost_per_kg + bag.cost)
+            materials += bags * (bag.wet_kg * farm.recipe_of(strain).price_per_kg + bag.cost)
     for event in inoculations:
         if not event.before:
             strain = farm.strain_called(lot_strain[event.lot])

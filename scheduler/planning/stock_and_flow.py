@@ -125,7 +125,7 @@ class StockAndFlow:
                     continue
                 card = problem.strains[strain]
                 bag, recipe = farm.bag_of(card), farm.recipe_of(card)
-                cost = bag.wet_kg * recipe.cost_per_kg + bag.cost
+                cost = bag.wet_kg * recipe.price_per_kg + bag.cost
                 column = self.matrix.column(gain=-cost, whole=True)
                 self.columns.fill[strain, index] = column
                 terms.append((column, 1.0))

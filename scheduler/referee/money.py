@@ -42,7 +42,7 @@ def _costs(case: Case) -> dict[str, float]:
         for code, bags in run.bags.items():
             strain = farm.strain_called(code)
             bag = farm.bag_of(strain)
-            materials += bags * (bag.wet_kg * farm.recipe_of(strain).cost_per_kg + bag.cost)
+            materials += bags * (bag.wet_kg * farm.recipe_of(strain).price_per_kg + bag.cost)
     for event in plan.inoculations:
         if not event.before:
             strain = case.strain_of(event.lot)

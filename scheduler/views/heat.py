@@ -10,7 +10,8 @@ from typing import Any
 from rich.console import Console
 
 from models.farm import Farm, Steriliser, Strain
-from models.thermal.cycle import Cycle, by_minute
+from models.thermal.curve import by_minute
+from models.thermal.cycle import Cycle
 from models.thermal.lethality import ORGANISMS
 from models.thermal.table import power_by_quarter
 from scheduler.tariff import energy_cost

@@ -10,8 +10,10 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from models.farm import Farm
-from models.thermal.cycle import CurveRow, Cycle, LoadPart, by_minute, steam_cycle
+from models.thermal.curve import CurveRow, by_minute
+from models.thermal.cycle import Cycle, steam_cycle
 from models.thermal.errors import ThermalError
+from models.thermal.load import LoadPart
 from models.thermal.substrate import heat_capacity
 from models.thermal.table import cycle_row, power_by_quarter
 from tests.planning.tiny import tiny
