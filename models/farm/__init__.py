@@ -7,7 +7,7 @@ from models.farm.room import Room, RoomKind
 from models.farm.site import Site
 from models.farm.steriliser import Steriliser
 from models.farm.strain import Strain
-from models.farm.substrate import Bag, Programme, Recipe
+from models.farm.substrate import Bag, Ingredient, Programme, Recipe
 from models.farm.trade import Limits, Market, Tariff, TariffPeriod
 from models.farm.units import clock_minutes, span_minutes
 
@@ -17,6 +17,7 @@ __all__ = [
     "Bag",
     "Crew",
     "Farm",
+    "Ingredient",
     "Limits",
     "Market",
     "Order",

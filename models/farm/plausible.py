@@ -76,6 +76,25 @@ def bag_masses(farm: Farm) -> Iterator[Mismatch]:
         yield Mismatch(f"bag.{bag.code}.wet_kg", f"{bag.wet_kg:g} kg{hint}", expected, severity=severity)
 
 
+def bags_fit_sterilisers(farm: Farm) -> Iterator[Mismatch]:
+    """Check that the bags have room in each steriliser whose volume is told."""
+    for steriliser in farm.steriliser:
+        if steriliser.volume_l is None:
+            continue
+        for bag in farm.bag:
+            litres = 1000 * bag.volume_m3
+            fit = floor(steriliser.volume_l / litres)
+            if fit < 1:
+                expected = f"a bag smaller than steriliser {steriliser.code} (volume_l {steriliser.volume_l:g})"
+                yield Mismatch(f"bag.{bag.code}", f"a bag of {litres:.3g} l", expected)
+            elif fit < steriliser.places:
+                yield Mismatch(
+                    f"steriliser.{steriliser.code}.places",
+                    f"{steriliser.places} bags",
+                    f"at most {fit}, more bags {bag.code} of {litres:.3g} l do not go into volume_l {steriliser.volume_l:g}",
+                )
+
+
 def supply_carries_elements(farm: Farm) -> Iterator[Mismatch]:
     """Each steriliser alone can be run on the site's supply."""
     supply, base = farm.site.supply_kw, farm.site.base_load_kw
@@ -188,6 +207,7 @@ CHECKS: tuple[tuple[Callable[[Farm], Iterator[Mismatch]], frozenset[str]], ...] 
     (strain_rooms, frozenset({"strain", "room"})),
     (skills_held, frozenset({"crew"})),
     (bag_masses, frozenset({"strain", "recipe", "bag"})),
+    (bags_fit_sterilisers, frozenset({"bag", "steriliser"})),
     (supply_carries_elements, frozenset({"site", "steriliser"})),
     (programmes_reached, frozenset({"site", "programme", "steriliser", "strain"})),
     (sterilisers_open, frozenset({"steriliser"})),

@@ -18,6 +18,8 @@ class Steriliser(FarmModel):
     """How many sterilisers of this kind the farm has."""
     places: Count
     """Bags in a full load [bags]."""
+    volume_l: Positive | None = None
+    """Inner volume [l]; left out: whether the bags fit is not checked."""
     element_kw: Annotated[float, Field(gt=0, le=1000, allow_inf_nan=False)]
     """Power of the heating elements of one [kW]."""
     generator_water_kg: Positive = 40.0

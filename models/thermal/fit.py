@@ -120,17 +120,15 @@ def fit_run(log_: RunLog, setting: Setting, part: LoadPart, surface_w_m2_k: floa
     Notes
     -----
     The core is modelled in the steam that was logged, so that it depends on the bag alone; between rows the steam
-    follows a monotone cubic. The
-    loss comes from power: what the element gives, less generator loss and make-up heat, is what bags and metal take up
-    and the vessel loses; power is logged, or known to be the element's while steam is short. Least squares over the
-    logarithms of diffusivity and surface coefficient and over the loss; ranges from the curvature at the optimum,
-    widened for errors that follow each other, sqrt((1 + r) / (1 - r)) at a lag-one correlation r, and by what a steam
-    probe that is `PROBE_K` off and the way between rows (cubic or straight) would change.
-    A value that the data do not determine, alone or apart from another, keeps what the farm file says and the others
-    are fitted again; their ranges then hold for that value. Conductivity = diffusivity × density × heat capacity, as in the model of the cycle.
+    follows a monotone cubic. The loss comes from power: what the element gives, less generator loss and make-up heat,
+    is what bags and metal take up and the vessel loses; power is logged, or known to be the element's while steam is
+    short. Least squares over the logarithms of diffusivity and surface coefficient and over the loss; ranges from the
+    curvature at the optimum, widened for errors that follow each other, sqrt((1 + r) / (1 - r)) at a lag-one
+    correlation r, and by what a steam probe that is `PROBE_K` off and the way between rows (cubic or straight) would
+    change. A value that the data do not determine, alone or apart from another, keeps what the farm file says and the
+    others are fitted again; their ranges then hold for that value. Conductivity = diffusivity × density × heat
+    capacity, as in the model of the cycle.
     """
-    from scipy.optimize import least_squares
-
     model = _Model(log_, setting, part, stack_factor)
     before = np.array([log(diffusivity(part.recipe, part.bag)), log(surface_w_m2_k), setting.vessel.loss_kw_k])
     free = np.array([True, True, model.blocks > 0])
@@ -251,16 +249,16 @@ class _Model:
         self.capacity_kj_k = part.wet_kg * bag_heat_capacity(part.recipe)
         self.spans = self._power_spans(log_)
         self.blocks = len(self.spans)
-        self._steps(straight=False)
+        self.cut_into_steps(straight=False)
 
     def with_steam(self, shift_k: float, *, straight: bool = False) -> _Model:
         """The same run in steam that differs by so much [K], or goes straight from row to row."""
         other = copy(self)
         other.steam_c = self.steam_c + shift_k
-        other._steps(straight=straight)
+        other.cut_into_steps(straight=straight)
         return other
 
-    def _steps(self, *, straight: bool) -> None:
+    def cut_into_steps(self, *, straight: bool) -> None:
         """Cut the time between rows into short steps; note at which of them each row stands."""
         from scipy.interpolate import PchipInterpolator
 

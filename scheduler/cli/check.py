@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
-import json
 from pathlib import Path
 from typing import Annotated
 
 import typer
+
+from scheduler.cli.output import console, print_document
 
 
 def check(
@@ -37,7 +38,7 @@ def check(
         folder = read_farm_folder(farm)
     except InputError as error:
         if as_json:
-            typer.echo(json.dumps(check_document(None, error.findings, ()), indent=2, ensure_ascii=False))
+            print_document(check_document(None, error.findings, ()), indent=2)
         else:
             for finding in error.findings:
                 prefix = "" if finding.severity == "error" else "warning: "
@@ -47,9 +48,7 @@ def check(
     findings = folder.findings + idle_findings(folder.farm, stages)
     if as_json:
         document = check_document(folder.farm.site.name, findings, stages)
-        typer.echo(json.dumps(document, indent=2, ensure_ascii=False))
+        print_document(document, indent=2)
     else:
-        from rich.console import Console
-
-        show_check(Console(highlight=False, emoji=False, markup=False), folder.farm.site.name, findings, stages)
+        show_check(console(), folder.farm.site.name, findings, stages)
     raise typer.Exit(1 if findings else 0)

@@ -60,6 +60,9 @@ def run() -> None:
 
     A search that was stopped may leave a solver thread behind, so the process ends without waiting for threads.
     """
+    for stream in (sys.stdout, sys.stderr):
+        if hasattr(stream, "reconfigure"):
+            stream.reconfigure(errors="replace")
     code = _run()
     for stream in (sys.stdout, sys.stderr):
         try:

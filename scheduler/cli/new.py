@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
-import json
 from pathlib import Path
 from typing import Annotated
 
 import typer
+
+from scheduler.cli.output import print_document
 
 
 def new(
@@ -20,7 +21,7 @@ def new(
     files = create_farm_folder(folder, like)
     if as_json:
         document = {"schema": "bagweek/new/1", "folder": str(folder), "like": like, "files": [f.name for f in files]}
-        typer.echo(json.dumps(document, indent=2, ensure_ascii=False))
+        print_document(document, indent=2)
         return
     for path in files:
         typer.echo(str(folder / path.name))

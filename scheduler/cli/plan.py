@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
-import json
 from pathlib import Path
 from typing import TYPE_CHECKING, Annotated
 
 import typer
+
+from scheduler.cli.output import console, print_document
 
 if TYPE_CHECKING:
     from models.calendar import Week
@@ -46,13 +47,11 @@ def plan(
         from scheduler.views.plan_json import plan_document
 
         document = plan_document(folder.farm, folder.orders, found, verdict)
-        typer.echo(json.dumps(document, indent=1, ensure_ascii=False))
+        print_document(document, indent=1)
     else:
-        from rich.console import Console
-
         from scheduler.views.plan_screen import show_plan
 
-        show_plan(Console(highlight=False, emoji=False, markup=False), folder.farm, folder.orders, found, verdict)
+        show_plan(console(), folder.farm, folder.orders, found, verdict)
     last = found.all_weeks[found.weeks].monday if found.look_ahead_weeks else None
     short = any(
         item.short_kg - item.unavoidable_kg > 0.005 and (last is None or item.day < last) for item in found.deliveries

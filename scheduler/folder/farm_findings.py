@@ -124,6 +124,8 @@ def _finding(detail: Any, loc: tuple[str | int, ...], table: Mapping[str, Any]) 
     if kind in {"model_type", "model_attributes_type", "dataclass_type"} or (listed and kind == "tuple_type"):
         section = str(loc[0])
         form = f"tables written [[{section}]]" if listed or len(loc) > 1 else f"a table written [{section}]"
+        if len(loc) > 2:
+            form = "a table in braces"
         return Finding(FILE, key, _brackets(name, value), form)
     if listed and kind == "too_short":
         return Finding(FILE, key, "none", f"at least one [[{name}]] table")

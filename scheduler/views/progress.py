@@ -42,6 +42,6 @@ class ProgressLine:
             parts.append(f"at most {bound:,.0f}")
         if gap is not None and gap < 10:
             parts.append(f"gap {100 * gap:.2f} %")
-        line = " · ".join(parts)[:78]
+        line = ", ".join(parts)[:78]
         self._stream.write(f"\r{line:<78}" if self._live else f"{line}\n")
         self._stream.flush()

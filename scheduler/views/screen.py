@@ -3,11 +3,30 @@
 from __future__ import annotations
 
 import textwrap
+import unicodedata
 
 from rich.console import Console
 from rich.text import Text
 
 WIDTH = 80
+PLAIN = str.maketrans({
+    "°": " ", "²": "2", "³": "3", "·": ".", "×": "x", "–": "-", "—": "-", "…": "...", "→": "->", "≤": "<=", "≥": ">=",
+    "α": "a", "γ": "g", "ρ": "r", "σ": "s", "±": "+-", "€": "EUR", "£": "GBP",
+})  # fmt: skip
+"""What stands for characters that a terminal of ASCII does not have."""
+
+
+def plain(text: str) -> str:
+    """A text in ASCII: signs replaced, accents left off, anything else a question mark.
+
+    Examples
+    --------
+    >>> plain("22 °C, 9 W/m², Brückner")
+    '22 C, 9 W/m2, Bruckner'
+    """
+    signs = text.replace(" °C", " C").translate(PLAIN)
+    letters = (character for character in unicodedata.normalize("NFKD", signs) if not unicodedata.combining(character))
+    return "".join(letters).encode("ascii", "replace").decode("ascii")
 
 
 class Screen:
@@ -16,11 +35,14 @@ class Screen:
     def __init__(self, console: Console) -> None:
         self.console = console
         self.width = min(console.width, WIDTH)
-        self._rule = "-" if console.options.ascii_only else "─"
-        self.full, self.empty = ("#", ".") if console.options.ascii_only else ("▪", "·")
+        self.ascii_only = console.options.ascii_only
+        self._rule = "-" if self.ascii_only else "─"
+        self.full, self.empty = ("#", ".") if self.ascii_only else ("▪", "·")
 
     def line(self, text: str = "", style: str = "") -> None:
         """One line, cut to the width."""
+        if self.ascii_only:
+            text = plain(text)
         self.console.print(Text(text[: self.width].rstrip(), style=style), soft_wrap=True)
 
     def title(self, text: str) -> None:

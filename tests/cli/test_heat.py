@@ -73,8 +73,8 @@ def test_phases_add_up_on_the_screen() -> None:
     lines = run().stdout.splitlines()
     rows = [line for line in lines if line.endswith("°C") and " h " in line]
     assert len(rows) == 6
-    hours = [float(line[30:38]) for line in rows]
-    passed = [float(line[38:48]) for line in rows]
+    hours = [float(line[27:35]) for line in rows]
+    passed = [float(line[35:45]) for line in rows]
     assert passed == pytest.approx([sum(hours[: k + 1]) for k in range(6)], abs=0.04)
     assert "+1 d" in rows[-1]
 

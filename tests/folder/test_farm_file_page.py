@@ -11,6 +11,7 @@ from models.farm import (
     Bag,
     Crew,
     Farm,
+    Ingredient,
     Limits,
     Market,
     Order,
@@ -31,7 +32,7 @@ from scheduler.folder.schema import farm_schema, farm_schema_text
 PAGE = (Path(__file__).parents[2] / "docs" / "reference" / "farm-file.md").read_text(encoding="utf-8")
 
 SECTIONS = {
-    "[site]": Site, "[[recipe]]": Recipe, "[[bag]]": Bag, "[[programme]]": Programme, "[[steriliser]]": Steriliser,
+    "[site]": Site, "[[recipe]]": Recipe, "[[recipe.ingredient]]": Ingredient, "[[bag]]": Bag, "[[programme]]": Programme, "[[steriliser]]": Steriliser,
     "[[room]]": Room, "[[strain]]": Strain, "[[crew]]": Crew, "[rates]": Rates, "[limits]": Limits,
     "[tariff]": Tariff, "[[tariff.periods]]": TariffPeriod, "[market]": Market, "orders.csv": Order,
     "stock.csv": StockLot,
@@ -41,7 +42,7 @@ UNITS = {
     "_kg": "kg", "_kw": "kW", "_m": "m", "_mm": "mm", "_h": "h", "_min": "min", "_days": "d", "_kpa": "kPa",
     "_per_h": "currency/h", "_per_kg": "currency/kg", "bags_h": "bags/h", "_kg_h": "kg/h", "_w": "W", "_c": "°C",
     "_pct": "%", "_w_per_k": "W/K", "_w_m2_k": "W/m² K", "_kg_m3": "kg/m³", "_w_m_k": "W/m K", "_kj_kg_k": "kJ/kg K",
-    "_w_per_kg": "W/kg",
+    "_w_per_kg": "W/kg", "_l": "l",
 }  # fmt: skip
 
 
