@@ -13,10 +13,12 @@ from models.thermal.errors import ThermalError
 from models.thermal.finish import finish
 from models.thermal.generator import boil_up_seconds
 from models.thermal.load import LoadPart, bag_states
-from models.thermal.steaming import LONGEST_HEAT_UP_MIN, BagState, Trace, Vessel, step, surface_temperature
+from models.thermal.steaming import FIRST_PARTS, LONGEST_HEAT_UP_MIN, BagState, Trace, Vessel, step, surface_temperature
 
 WARM_C = (30.0, 60.0)
 """Core temperatures between which a wet mix is an incubator [°C] (common practice, no source)."""
+FIRST_RISE_K = 10.0
+"""A vessel this little above its start gets its first steam [K]."""
 WET_MIX_BELOW_C = 70.0
 """A core that has not been hotter is still a wet mix, whose souring time runs on [°C] (common practice, no source)."""
 
@@ -192,7 +194,9 @@ class _Course:
         else:
             self.generator_c = self._cooled()
         trace = Trace()
-        self.vessel_c = step(vessel, self.states, self.vessel_c, trace, share * vessel.steam_kw)
+        first = self.vessel_c - self.setting.start_c < FIRST_RISE_K
+        parts = FIRST_PARTS if first else 1
+        self.vessel_c = step(vessel, self.states, self.vessel_c, trace, parts=parts, steam_kw=share * vessel.steam_kw)
         steaming_kw = trace.element_kw[0] if share > 0 else 0.0
         kw = (steaming_kw if share == 1 else (1 - share) * vessel.element_kw + share * steaming_kw) if on else 0.0
         self.energy_kwh += kw / 60

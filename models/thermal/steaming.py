@@ -17,6 +17,19 @@ from models.thermal.errors import ThermalError
 
 STEP_S = 60.0
 LONGEST_HEAT_UP_MIN = 5 * 1440
+FIRST_MINUTES, FIRST_PARTS = 3, 6
+"""Minutes from the first steam that are cut into parts, as the vessel's temperature bends most there."""
+GONE = 40.0
+"""A mode that decays by this exponent in one step has gone."""
+
+
+@dataclass(frozen=True, slots=True)
+class Stride:
+    """A step: what is left of each mode, what a rise of one kelvin adds, and what it adds to the mean at once [-]."""
+
+    decay: Floats
+    gain: Floats
+    uptake: float
 
 
 @dataclass
@@ -27,6 +40,17 @@ class BagState:
     capacity_kj_k: float
     surface_w_k: float
     amplitudes: Floats
+    _steps: dict[float, Stride] = field(default_factory=dict, repr=False)
+
+    def stride(self, seconds: float) -> Stride:
+        """What a step of so many seconds does; worked out once."""
+        known = self._steps.get(seconds)
+        if known is None:
+            exponent = self.modes.rates * seconds
+            decay = np.where(exponent < GONE, np.exp(-exponent), 0.0)
+            gain = -np.expm1(-exponent) / exponent
+            known = self._steps[seconds] = Stride(decay, gain, 1 - float(self.modes.mean @ gain))
+        return known
 
     def core_c(self, vessel_c: float) -> float:
         """Temperature of the coldest point [°C]."""
@@ -90,7 +114,7 @@ def heat_up(vessel: Vessel, bags: Sequence[BagState], target_c: float, start_c: 
     vessel_c, minute = start_c, 0
     while minute < LONGEST_HEAT_UP_MIN:
         before = min(state.core_c(vessel_c) for state in bags)
-        vessel_c = step(vessel, bags, vessel_c, trace)
+        vessel_c = step(vessel, bags, vessel_c, trace, parts=FIRST_PARTS if minute < FIRST_MINUTES else 1)
         after = min(state.core_c(vessel_c) for state in bags)
         if after >= target_c:
             return minute + (target_c - before) / (after - before)
@@ -108,36 +132,55 @@ def _never(vessel: Vessel, bags: Sequence[BagState], target_c: float, vessel_c: 
 
 
 def step(
-    vessel: Vessel, bags: Sequence[BagState], vessel_c: float, trace: Trace, steam_kw: float | None = None
+    vessel: Vessel,
+    bags: Sequence[BagState],
+    vessel_c: float,
+    trace: Trace,
+    *,
+    parts: int = 1,
+    steam_kw: float | None = None,
 ) -> float:
     """One minute of steam; the new vessel temperature [°C].
 
-    ``steam_kw`` is what the steam can bring in that minute, in place of what the element gives [kW]; without any the
-    vessel cools.
+    Parameters
+    ----------
+    parts : int
+        Equal parts of the minute in each of which the vessel's temperature is taken to change evenly.
+    steam_kw : float, optional
+        What the steam can bring in that minute, in place of what the element gives [kW]; without any the vessel cools.
     """
     available = vessel.steam_kw if steam_kw is None else steam_kw
-    decays = [np.exp(-state.modes.rates * STEP_S) for state in bags]
-    gains = [(1 - decay) / (state.modes.rates * STEP_S) for decay, state in zip(decays, bags, strict=True)]
+    delivered = 0.0
+    for _ in range(parts):
+        vessel_c, heat = _advance(vessel, bags, vessel_c, STEP_S / parts, available, trace)
+        delivered += heat
+    _note(vessel, bags, vessel_c, delivered / STEP_S, trace)
+    return vessel_c
+
+
+def _advance(
+    vessel: Vessel, bags: Sequence[BagState], vessel_c: float, seconds: float, available_kw: float, trace: Trace
+) -> tuple[float, float]:
+    """Let some time pass; the new vessel temperature [°C], and the heat that the steam brought [kJ]."""
+    strides = [state.stride(seconds) for state in bags]
     fixed = slope = 0.0
-    for state, decay, gain in zip(bags, decays, gains, strict=True):
-        mean = state.modes.mean
+    for state, stride in zip(bags, strides, strict=True):
         # mean after = T1 - mean @ (u decay + (T1 - T0) gain); before = T0 - mean @ u
-        slope += state.capacity_kj_k * (1 - float(mean @ gain))
-        fixed += state.capacity_kj_k * float(mean @ (state.amplitudes * (1 - decay)))
+        slope += state.capacity_kj_k * stride.uptake
+        fixed += state.capacity_kj_k * float(state.modes.mean @ (state.amplitudes * (1 - stride.decay)))
     slope += vessel.metal_kj_k
-    loss_before = vessel.loss_kw_k * (vessel_c - vessel.ambient_c) * STEP_S
+    loss_before = vessel.loss_kw_k * (vessel_c - vessel.ambient_c) * seconds
     # heat needed for a rise x: slope x + fixed + loss_before + loss slope x / 2
-    full = slope + vessel.loss_kw_k * STEP_S / 2
-    rise = (available * STEP_S - fixed - loss_before) / full
+    full = slope + vessel.loss_kw_k * seconds / 2
+    rise = (available_kw * seconds - fixed - loss_before) / full
     rise = min(rise, vessel.boil_c - vessel_c)
     heat = max(0.0, full * rise + fixed + loss_before)
-    for state, decay, gain in zip(bags, decays, gains, strict=True):
-        state.amplitudes = state.amplitudes * decay + rise * gain
+    for state, stride in zip(bags, strides, strict=True):
+        state.amplitudes = state.amplitudes * stride.decay + rise * stride.gain
     trace.delivered_kj += heat
     trace.stored_kj += slope * rise + fixed
-    trace.lost_kj += loss_before + vessel.loss_kw_k * rise / 2 * STEP_S
-    _note(vessel, bags, vessel_c + rise, heat / STEP_S, trace)
-    return vessel_c + rise
+    trace.lost_kj += loss_before + vessel.loss_kw_k * rise / 2 * seconds
+    return vessel_c + rise, heat
 
 
 def _note(vessel: Vessel, bags: Sequence[BagState], vessel_c: float, heat_kw: float, trace: Trace) -> None:
