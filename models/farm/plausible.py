@@ -91,7 +91,7 @@ def bags_fit_sterilisers(farm: Farm) -> Iterator[Mismatch]:
                 yield Mismatch(
                     f"steriliser.{steriliser.code}.places",
                     f"{steriliser.places} bags",
-                    f"at most {fit}, more bags {bag.code} of {litres:.3g} l do not go into volume_l {steriliser.volume_l:g}",
+                    f"at most {fit} bags {bag.code} of {litres:.3g} l in volume_l {steriliser.volume_l:g}",
                 )
 
 

@@ -20,6 +20,8 @@ Floats = NDArray[np.float64]
 MODES_A_SIDE = 14
 FINE = 5
 """How many times as many roots a side tell what the modes left out add up to."""
+SMALL_REST = 1e-4
+"""Modes left out that weigh less than this together have no amplitude after a change of surroundings [-]."""
 
 
 def plate_roots(biot: float, count: int) -> Floats:
@@ -260,20 +262,35 @@ def project(state: Floats, old: Modes, new: Modes) -> Floats:
     Notes
     -----
     The new set is orthogonal on the new body; the overlap of one direction is integrated by Gauss-Legendre
-    quadrature. Of a smaller new body the old field is taken round its centre, where a stack is hottest.
+    quadrature. Of a smaller new body the old field is taken round its centre, where a stack is hottest. The modes that
+    stand for those left out keep centre and mean where they were.
     """
     shape = tuple(len(side.roots) for side in old.sides)
     field = (state[:-2] * old.core[:-2]).reshape(shape)
     for axis, (a, b) in enumerate(zip(old.sides, new.sides, strict=True)):
         field = np.moveaxis(np.tensordot(_overlap(a, b), field, axes=(1, axis)), 0, axis)
-    # The fast modes that stand for all others have long decayed when the surroundings change.
-    return np.append(field.ravel() / new.core[:-2], [0.0, 0.0])
+    amplitudes = field.ravel() / new.core[:-2]
+    stack_factor = old.sides[0].length_m / new.sides[0].length_m
+    rest = [
+        (before - float(weights[:-2] @ amplitudes)) / weight if abs(weight) > SMALL_REST else 0.0
+        for before, weights, weight in (
+            (float(old.core @ state), new.core, float(new.core[-2])),
+            (float(old.central_mean(stack_factor) @ state), new.mean, float(new.mean[-1])),
+        )
+    ]
+    return np.append(amplitudes, rest)
+
+
+@lru_cache(maxsize=1)
+def _gauss() -> tuple[Floats, Floats]:
+    """Nodes and weights of Gauss-Legendre quadrature on 0 to 1 [-]."""
+    nodes, weights = np.polynomial.legendre.leggauss(96)
+    return (nodes + 1) / 2, weights / 2
 
 
 def _overlap(old: Side, new: Side) -> Floats:
     """Expansion of each old mode shape in the new ones, along one direction [new, old]."""
-    nodes, quadrature = np.polynomial.legendre.leggauss(96)
-    x, weight = (nodes + 1) / 2, quadrature / 2
+    x, weight = _gauss()
     inner = x * new.length_m / old.length_m
     if old.round_:
         from scipy.special import j0

@@ -275,11 +275,12 @@ class _Model:
 
     def _power_spans(self, log_: RunLog) -> list[tuple[int, int, float]]:
         """Blocks of rows (first, last) with a known mean power [kW], from when the generator boils."""
-        vessel, spans, first = self.setting.vessel, [], None
-        for row in range(1, self.rows):
+        spans: list[tuple[int, int, float]] = []
+        first = None
+        near = self.steam_c > self.setting.vessel.boil_c - SHORT_OF_BOILING_K
+        last = self.rows if log_.kw is not None or not near.any() else int(np.argmax(near))
+        for row in range(1, last):
             known = self.steam_c[row - 1] > self.steam_c[0] + STEAM_COMES_K
-            if log_.kw is None:
-                known = known and self.steam_c[row] < vessel.boil_c - SHORT_OF_BOILING_K
             if not known:
                 first = None
                 continue

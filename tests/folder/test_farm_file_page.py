@@ -32,7 +32,8 @@ from scheduler.folder.schema import farm_schema, farm_schema_text
 PAGE = (Path(__file__).parents[2] / "docs" / "reference" / "farm-file.md").read_text(encoding="utf-8")
 
 SECTIONS = {
-    "[site]": Site, "[[recipe]]": Recipe, "[[recipe.ingredient]]": Ingredient, "[[bag]]": Bag, "[[programme]]": Programme, "[[steriliser]]": Steriliser,
+    "[site]": Site, "[[recipe]]": Recipe, "[[recipe.ingredient]]": Ingredient, "[[bag]]": Bag,
+    "[[programme]]": Programme, "[[steriliser]]": Steriliser,
     "[[room]]": Room, "[[strain]]": Strain, "[[crew]]": Crew, "[rates]": Rates, "[limits]": Limits,
     "[tariff]": Tariff, "[[tariff.periods]]": TariffPeriod, "[market]": Market, "orders.csv": Order,
     "stock.csv": StockLot,
