@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
+
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
@@ -92,7 +94,7 @@ def test_survivors_never_rise_and_start_whole(loss, flushes):
     card = GREY_OYSTER.model_copy(update={"flush_loss_pct": loss, "flush_share": (1 / flushes,) * flushes})
     shares = flush_survival(card)
     assert shares[0] == 1.0
-    assert all(after <= before for before, after in zip(shares, shares[1:], strict=False))
+    assert all(after <= before for before, after in pairwise(shares))
     assert sum(expected_flush_kg(card, OAK, BAG)) <= kg_per_bag(card, OAK, BAG) * (1 + 1e-12)
 
 
