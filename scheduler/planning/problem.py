@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from datetime import date
+from functools import cached_property
 from math import ceil
 from zoneinfo import ZoneInfo
 
@@ -106,7 +107,11 @@ class Problem:
 
     def flush_day(self, strain: int, flush: int, pool: int) -> int:
         """Days from opening in a fruiting pool to flush number ``flush`` (from 1) [d]."""
-        return flush_days(self.strains[strain], self.fruit_pools[pool].temp_c)[flush - 1]
+        return self._flush_days[strain][pool][flush - 1]
+
+    @cached_property
+    def _flush_days(self) -> tuple[tuple[tuple[int, ...], ...], ...]:
+        return tuple(tuple(flush_days(card, pool.temp_c) for pool in self.fruit_pools) for card in self.strains)
 
     def quickest_flush_day(self, strain: int, flush: int) -> int:
         """Days from opening to flush number ``flush`` (from 1) in the quickest fruiting pool [d]."""

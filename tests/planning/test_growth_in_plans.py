@@ -107,3 +107,23 @@ def test_self_heating_lets_a_cool_shelf_run_faster() -> None:
         plan = planned(tiny(strain=[card], room=rooms(15.0, shelf=18)), weeks=5)
         spans.append({(event.ready_day - event.day).days for event in plan.inoculations})
     assert spans == [{10}, {8}]
+
+
+@pytest.mark.parametrize(
+    ("planned_with", "true", "rules"),
+    [
+        ({}, {"flush_loss_pct": 20}, {"kg"}),
+        ({"flush_loss_pct": 20}, {"flush_loss_pct": 10}, {"kg"}),
+        ({}, {"fruit_at_c": 20, "fruit_q10": 3}, {"flush-days"}),
+        ({}, {"self_heating_k": 9}, {"colonise"}),
+        ({}, {"shelf_life_at_c": 1}, {"freshness"}),
+    ],
+)
+def test_a_plan_made_for_another_card_does_not_pass(planned_with, true, rules) -> None:
+    """The referee counts by the card it is given, and names the rule that broke."""
+    card = {"flush_share": [0.6, 0.4], "shelf_life_days": 9}
+    site = {"name": "Paper Farm", "timezone": "Europe/Dublin", "ambient_c": 15, "cold_store_c": 11}
+    made = planned(tiny(site=site, strain=[strain(**card, **planned_with)], room=rooms(15.0, shelf=18)), weeks=5)
+    assert made.openings
+    farm = tiny(site=site, strain=[strain(**card, **true)], room=rooms(15.0, shelf=18))
+    assert rules <= {violation.rule for violation in referee(farm, [friday(20.0)], [], made).violations}
