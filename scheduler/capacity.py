@@ -11,7 +11,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 
 from models.farm import Farm, Programme, Steriliser, Strain
-from models.growth import days_to_ready, flush_kg, kg_per_bag, place_days, suits
+from models.growth import days_to_ready, expected_flush_kg, place_days, suits
 from models.thermal.errors import ThermalError
 from models.thermal.table import CycleRow, cycle_row
 from scheduler.errors import Finding
@@ -212,7 +212,7 @@ def _colonising(farm: Farm) -> Iterator[Capacity]:
 
 
 def _kg(farm: Farm, strain: Strain) -> float:
-    return kg_per_bag(strain, farm.recipe_of(strain), farm.bag_of(strain))
+    return sum(expected_flush_kg(strain, farm.recipe_of(strain), farm.bag_of(strain)))
 
 
 def _opening(farm: Farm, week: RepeatingWeek) -> Capacity:
@@ -229,9 +229,9 @@ def _fruiting(farm: Farm) -> Iterator[Capacity]:
     for strain in farm.strain:
         low, high = strain.fruiting_temp_c
         rooms = [room for room in farm.rooms_of("fruiting") if low <= room.temp_c <= high]
-        by_flush = flush_kg(strain, farm.recipe_of(strain), farm.bag_of(strain))
+        by_flush = expected_flush_kg(strain, farm.recipe_of(strain), farm.bag_of(strain))
         for flushes in range(1, len(by_flush) + 1):
-            days = [(room, place_days(strain, flushes, room.clean_days)) for room in rooms]
+            days = [(room, place_days(strain, flushes, room.clean_days, room.temp_c)) for room in rooms]
             bags = sum(room.places * 7 / held for room, held in days)
             kg = sum(by_flush[:flushes])
             terms = [f"{room.places} places in {room.code} / {held} days" for room, held in days]

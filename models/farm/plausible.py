@@ -38,10 +38,11 @@ def _nearest_room(rooms: tuple[Room, ...], low: float, high: float) -> str:
 def strain_rooms(farm: Farm) -> Iterator[Mismatch]:
     """Each strain has a colonisation room it grows in and a fruiting room it fruits in."""
     for strain in farm.strain:
-        low, high = strain.t_min_c, strain.t_max_c
+        low, high = strain.t_min_c, strain.t_max_c - strain.self_heating_k
         rooms = farm.rooms_of("colonisation")
-        if not any(low < room.temp_c < high for room in rooms):
-            expected = f"a colonisation room between its t_min_c and t_max_c, {low:g} to {high:g} °C"
+        if not any(strain.grows_in(room.temp_c) for room in rooms):
+            less = f" less self_heating_k ({strain.self_heating_k:g})" if strain.self_heating_k else ""
+            expected = f"a colonisation room between its t_min_c and t_max_c{less}, {low:g} to {high:g} °C"
             yield Mismatch(f"strain.{strain.code}", _nearest_room(rooms, low, high), expected)
         low, high = strain.fruiting_temp_c
         rooms = farm.rooms_of("fruiting")
@@ -168,7 +169,7 @@ def rooms_carry_heat_off(farm: Farm) -> Iterator[Mismatch]:
         heats = {
             strain.code: room.places * farm.bag_of(strain).wet_kg * strain.heat_w_per_kg
             for strain in farm.strain
-            if strain.t_min_c < room.temp_c < strain.t_max_c
+            if strain.grows_in(room.temp_c)
         }
         if room.cooling_w is None or not heats:
             continue

@@ -30,6 +30,9 @@ class Site(FarmModel):
     ambient_c: Temperature | tuple[Temperature, ...] = 15.0
     """Temperature round the sterilisers [°C]: one value, or twelve, one a month."""
 
+    cold_store_c: Temperature | None = None
+    """Temperature of the store that picked mushrooms wait in [°C]; left out: as each strain's shelf_life_at_c."""
+
     @field_validator("timezone")
     @classmethod
     def _known_zone(cls, value: str) -> str:

@@ -18,6 +18,8 @@ class Strain(FarmModel):
     """Code of 1-6 letters or digits; part of every lot code."""
     name: str = ""
     """Name in words."""
+    preset: str = ""
+    """Name of the preset whose values stand where this table has none, such as grey-oyster."""
     recipe: Code
     """Code of the recipe it grows on."""
     bag: Code
@@ -40,6 +42,8 @@ class Strain(FarmModel):
     """Room temperature at which colonise_days holds [°C]."""
     colonise_at_spawn_pct: Annotated[float, Field(gt=0, le=50, allow_inf_nan=False)]
     """Spawn rate at which colonise_days holds [% of wet substrate]."""
+    self_heating_k: Annotated[float, Field(ge=0, le=20, allow_inf_nan=False)] = 0.0
+    """Measured warmth of the core above its room, mean over colonisation [K]."""
     mature_days: Days = 0
     """Days after colonisation before a bag may be opened [d], such as browning."""
     ready_wait_days: Days = 3
@@ -50,16 +54,24 @@ class Strain(FarmModel):
     """Days from opening to the first flush [d]."""
     rest_days: Annotated[int, Field(ge=1, le=200)] = 12
     """Days from one flush to the next [d]."""
+    fruit_at_c: Temperature | None = None
+    """Fruiting room temperature at which pin_days and rest_days hold [°C]; left out: they hold at any."""
+    fruit_q10: Annotated[float, Field(ge=1, le=6, allow_inf_nan=False)] = 1.0
+    """How many times faster pins and rests go 10 °C warmer [-]; needs fruit_at_c."""
     flush_share: Annotated[tuple[Positive, ...], Field(min_length=1, max_length=8)]
     """Share of the yield in each flush; adds up to 1."""
     be_pct: Annotated[float, Field(gt=0, le=400, allow_inf_nan=False)]
     """Biological efficiency: fresh mushrooms over dry substrate [%]."""
     loss_pct: Annotated[float, Field(ge=0, lt=100, allow_inf_nan=False)] = 0.0
     """Bags expected to be lost in colonisation [%]."""
+    flush_loss_pct: Annotated[float, Field(ge=0, lt=100, allow_inf_nan=False)] = 0.0
+    """Bags expected to be lost between one flush and the next [%]."""
     fruiting_temp_c: tuple[Temperature, Temperature]
     """Lowest and highest temperature of its fruiting room [°C]."""
     shelf_life_days: Annotated[int, Field(ge=0, le=90)]
     """Days picked mushrooms can be sold for [d]."""
+    shelf_life_at_c: Temperature | None = None
+    """Store temperature at which shelf_life_days holds [°C]; left out: it holds in the farm's own store."""
     heat_w_per_kg: NotNegative = 0.25
     """Heat of a colonising bag at its peak [W/kg wet]."""
     yield_cv: NotNegative = 0.20
@@ -97,4 +109,34 @@ class Strain(FarmModel):
                 f"colonise_at_c between t_min_c ({low:g}) and t_max_c ({high:g}) was expected;"
                 f" found {self.colonise_at_c:g}"
             )
+        if self.colonise_at_c + self.self_heating_k >= high:
+            raise ValueError(
+                f"colonise_at_c and self_heating_k together below t_max_c ({high:g}) were expected;"
+                f" found {self.colonise_at_c:g} and {self.self_heating_k:g}"
+            )
         return self
+
+    @model_validator(mode="after")
+    def _fruiting_response(self) -> Strain:
+        low, high = self.fruiting_temp_c
+        if self.fruit_at_c is None and self.fruit_q10 != 1.0:
+            raise ValueError(
+                f"fruit_at_c, the temperature at which pin_days and rest_days hold, was expected beside fruit_q10;"
+                f" found fruit_q10 {self.fruit_q10:g} alone"
+            )
+        if self.fruit_at_c is not None and not low <= self.fruit_at_c <= high:
+            raise ValueError(
+                f"fruit_at_c within fruiting_temp_c ({low:g} to {high:g}) was expected; found {self.fruit_at_c:g}"
+            )
+        return self
+
+    def grows_in(self, room_temp_c: float) -> bool:
+        """Whether it grows in a room [°C]: air above ``t_min_c``; core, ``self_heating_k`` warmer, below ``t_max_c``.
+
+        Examples
+        --------
+        >>> from models.growth.examples import GREY_OYSTER
+        >>> GREY_OYSTER.grows_in(22.0), GREY_OYSTER.grows_in(36.0)
+        (True, False)
+        """
+        return self.t_min_c < room_temp_c and room_temp_c + self.self_heating_k < self.t_max_c

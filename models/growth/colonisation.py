@@ -40,8 +40,27 @@ def spawn_factor(spawn_rate_pct: float, reference_pct: float) -> float:
 
 
 def suits(strain: Strain, room_temp_c: float) -> bool:
-    """Whether a strain grows at all at a temperature [°C]: between its ``t_min_c`` and ``t_max_c``, both excluded."""
-    return strain.t_min_c < room_temp_c < strain.t_max_c
+    """Whether a strain grows in a room at all.
+
+    Parameters
+    ----------
+    strain : Strain
+        The strain.
+    room_temp_c : float
+        Temperature of the room [°C].
+
+    Returns
+    -------
+    bool
+        True where the room is above ``t_min_c`` and the core, ``self_heating_k`` warmer, is below ``t_max_c``.
+
+    Examples
+    --------
+    >>> from models.growth.examples import GREY_OYSTER
+    >>> suits(GREY_OYSTER, 22.0), suits(GREY_OYSTER, 36.0)
+    (True, False)
+    """
+    return strain.grows_in(room_temp_c)
 
 
 def colonisation_days(strain: Strain, room_temp_c: float) -> float:
@@ -66,23 +85,32 @@ def colonisation_days(strain: Strain, room_temp_c: float) -> float:
 
     Notes
     -----
-    ``days = colonise_days × γ(colonise_at_c) / γ(room) × (colonise_at_spawn_pct / spawn_rate_pct)^(1/3)`` with γ of
-    `temperature_response`. The stated days were measured in a room at ``colonise_at_c``, so the heat that bags give
-    off themselves is already in them.
+    ``days = colonise_days × γ(colonise_at_c + ΔT) / γ(room + ΔT) × (colonise_at_spawn_pct / spawn_rate_pct)^(1/3)``
+    with γ of `temperature_response` and ΔT = ``self_heating_k``, the mean warmth of the core above its room. The stated
+    days were measured in a room at ``colonise_at_c``, so the heat that bags give off themselves is already in them: ΔT
+    moves both cores along the curve, and says only where on it the two rooms are compared.
 
     Examples
     --------
     >>> from models.growth.examples import GREY_OYSTER
     >>> round(colonisation_days(GREY_OYSTER, 22.0), 2)  # 16 days at 22 °C and 5 % spawn; here 4 % spawn
     17.24
+
+    With cores 3 °C above the room, a cooler room costs less time:
+
+    >>> warm = GREY_OYSTER.model_copy(update={"self_heating_k": 3.0})
+    >>> [round(colonisation_days(card, 18.0), 1) for card in (GREY_OYSTER, warm)]
+    [24.1, 21.1]
     """
     if not suits(strain, room_temp_c):
+        warmest = strain.t_max_c - strain.self_heating_k
         raise ValueError(
-            f"a room between {strain.t_min_c:g} and {strain.t_max_c:g} °C was expected for strain {strain.code};"
+            f"a room between {strain.t_min_c:g} and {warmest:g} °C was expected for strain {strain.code};"
             f" found {room_temp_c:g} °C"
         )
     cardinal = (strain.t_min_c, strain.t_opt_c, strain.t_max_c)
-    warmth = temperature_response(strain.colonise_at_c, *cardinal) / temperature_response(room_temp_c, *cardinal)
+    stated, here = strain.colonise_at_c + strain.self_heating_k, room_temp_c + strain.self_heating_k
+    warmth = temperature_response(stated, *cardinal) / temperature_response(here, *cardinal)
     return strain.colonise_days * warmth * spawn_factor(strain.spawn_rate_pct, strain.colonise_at_spawn_pct)
 
 

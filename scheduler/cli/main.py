@@ -16,6 +16,7 @@ from scheduler.cli.check import check
 from scheduler.cli.heat import heat
 from scheduler.cli.new import new
 from scheduler.cli.plan import plan
+from scheduler.cli.strains import strains
 
 INTERRUPTED = 130
 LONGEST_SENTENCE = 300
@@ -51,6 +52,7 @@ def main(
 
 app.command("new")(new)
 app.command("check")(check)
+app.command("strains")(strains)
 app.command("heat")(heat)
 app.command("plan")(plan)
 

@@ -17,6 +17,7 @@ from models.farm.plausible import plausibility
 from models.farm.references import CODED_SECTIONS, duplicate_codes, unknown_references
 from scheduler.errors import Finding
 from scheduler.folder.farm_findings import FILE, of_mismatch, of_validation
+from scheduler.folder.presets import with_presets
 from scheduler.folder.text_file import MEGABYTE, read_text
 from scheduler.folder.toml_faults import toml_fault
 
@@ -25,10 +26,14 @@ LIMIT = 1 * MEGABYTE
 
 @dataclass(frozen=True, slots=True)
 class FarmFile:
-    """What could be read of ``farm.toml``: the farm when it is sound, and the codes in it in any case."""
+    """What could be read of ``farm.toml``: the farm when it is sound, and the codes in it in any case.
+
+    ``written`` holds, by strain code, the keys that stand in the file itself and not only in a preset.
+    """
 
     farm: Farm | None = None
     codes: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
+    written: Mapping[str, frozenset[str]] = field(default_factory=dict)
 
 
 def read_farm_file(path: Path, findings: list[Finding]) -> FarmFile:
@@ -38,8 +43,10 @@ def read_farm_file(path: Path, findings: list[Finding]) -> FarmFile:
     if table is None:
         return FarmFile()
     codes = {section: _codes(table, section) for section in CODED_SECTIONS}
-    mine = [of_mismatch(one) for one in duplicate_codes(codes)]
     strains = [one for one in _tables(table, "strain") if isinstance(one.get("code"), str)]
+    written = {one["code"]: frozenset(one) for one in strains}
+    table, mine = with_presets(table)
+    mine += [of_mismatch(one) for one in duplicate_codes(codes)]
     mine += [of_mismatch(one) for one in unknown_references(strains, codes)]
     unresolved = bool(mine)
     try:
@@ -54,20 +61,21 @@ def read_farm_file(path: Path, findings: list[Finding]) -> FarmFile:
         mine += [of_mismatch(one) for one in plausibility(farm)]
     findings += mine
     sound = all(finding.severity == "warning" for finding in mine)
-    return FarmFile(farm if sound else None, codes)
+    return FarmFile(farm if sound else None, codes, written)
 
 
 def farm_from_table(table: Mapping[str, Any]) -> Farm:
     """Make a farm from a table as TOML reads it.
 
-    Numbers in quotes and true or false for a number are refused; ``110.0`` counts as a whole number.
+    Numbers in quotes and true or false for a number are refused; ``110.0`` counts as a whole number. Strains are filled
+    from their presets.
 
     Raises
     ------
     pydantic.ValidationError
         The table does not describe a farm; `scheduler.folder.farm_findings.of_validation` puts it in words.
     """
-    return Farm.model_validate_json(json.dumps(_plain(table)), strict=True)
+    return Farm.model_validate_json(json.dumps(_plain(with_presets(table)[0])), strict=True)
 
 
 def _plain(value: Any) -> Any:

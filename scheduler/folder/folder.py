@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, field
 from pathlib import Path
 
 from models.farm import Farm, Order, StockLot
@@ -28,6 +29,8 @@ class FarmFolder:
         Warnings only.
     path : Path
         The folder.
+    written : mapping of str to frozenset of str
+        By strain code, the keys that ``farm.toml`` itself has, and not only the strain's preset.
     """
 
     farm: Farm
@@ -35,6 +38,7 @@ class FarmFolder:
     stock: tuple[StockLot, ...]
     findings: tuple[Finding, ...]
     path: Path
+    written: Mapping[str, frozenset[str]] = field(default_factory=dict)
 
 
 def read_farm_folder(path: Path | str) -> FarmFolder:
@@ -65,7 +69,7 @@ def read_farm_folder(path: Path | str) -> FarmFolder:
     stock = read_stock(folder / "stock.csv", farm_file, findings)
     if farm_file.farm is None or any(finding.severity == "error" for finding in findings):
         raise InputError(tuple(findings))
-    return FarmFolder(farm_file.farm, orders, stock, tuple(findings), folder)
+    return FarmFolder(farm_file.farm, orders, stock, tuple(findings), folder, farm_file.written)
 
 
 def _no_folder(folder: Path) -> Finding | None:

@@ -59,7 +59,7 @@ def read_stock(path: Path, farm: FarmFile, findings: list[Finding]) -> tuple[Sto
 def _suits(strain: Strain, lot: StockLot, room: Room) -> bool:
     if lot.stage == "fruiting":
         return strain.fruiting_temp_c[0] <= room.temp_c <= strain.fruiting_temp_c[1]
-    return lot.stage not in {"colonising", "ready"} or strain.t_min_c < room.temp_c < strain.t_max_c
+    return lot.stage not in {"colonising", "ready"} or strain.grows_in(room.temp_c)
 
 
 def _misplaced(farm: Farm, row: int, lot: StockLot) -> Iterator[Finding]:

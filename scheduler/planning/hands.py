@@ -25,9 +25,10 @@ def labour_needs(flow: StockAndFlow) -> dict[tuple[str, int], Terms]:
         need("steam", group.unload_day, column, 1 / rates.unload_bags_h)
     for (_, _, day), column in columns.inoculate.items():
         need("inoculate", day, column, 1 / rates.inoculate_bags_h)
-    for (strain, _, day, flushes), column in columns.open.items():
+    for (strain, pool, day, flushes), column in columns.open.items():
         need("open", day, column, 1 / rates.open_bags_h)
-        need("open", flow.leave_day(day + flow.problem.flush_day(strain, flushes)), column, 1 / rates.discard_bags_h)
+        last = day + flow.problem.flush_day(strain, flushes, pool)
+        need("open", flow.leave_day(last), column, 1 / rates.discard_bags_h)
     for (index, kept), column in columns.keep.items():
         lot = flow.problem.stock.fruiting[index]
         last = lot.flush_days[kept - lot.picked - 1] if kept > lot.picked else 0

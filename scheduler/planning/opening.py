@@ -101,13 +101,13 @@ def _add_openings(flow: StockAndFlow, strain: int, sources: list[int]) -> None:
         columns = []
         for pool in problem.fruit_pools_for(strain):
             for flushes in range(1, len(kg) + 1):
-                if day + problem.flush_day(strain, flushes) >= problem.days:
+                if day + problem.flush_day(strain, flushes, pool) >= problem.days:
                     break
                 column = flow.matrix.column(whole=True)
                 flow.columns.open[strain, pool, day, flushes] = column
                 columns.append(column)
                 for flush in range(1, flushes + 1):
-                    flow.ripens(strain, day + problem.flush_day(strain, flush), column, kg[flush - 1])
+                    flow.ripens(strain, day + problem.flush_day(strain, flush, pool), column, kg[flush - 1])
         if len(sources) == 1:
             # What is opened comes straight out of the only source; no column and row are needed in between.
             row = flow.matrix.entries[flow.ready_rows[strain, sources[0], day]]

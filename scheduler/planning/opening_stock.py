@@ -8,7 +8,7 @@ from datetime import timedelta
 
 from models.farm import Farm, Room, RoomKind, StockLot, Strain
 from models.growth.colonisation import days_to_ready
-from models.growth.flush import flush_kg
+from models.growth.flush import expected_flush_kg, flush_days
 from scheduler.planning.shifts import Shifts
 
 
@@ -78,7 +78,7 @@ def room_for(farm: Farm, lot: StockLot, strain: Strain, kind: RoomKind) -> Room:
         return farm.room_called(lot.room)
     rooms = farm.rooms_of(kind)
     for room in rooms:
-        if kind == "colonisation" and strain.t_min_c < room.temp_c < strain.t_max_c:
+        if kind == "colonisation" and strain.grows_in(room.temp_c):
             return room
         if kind == "fruiting" and strain.fruiting_temp_c[0] <= room.temp_c <= strain.fruiting_temp_c[1]:
             return room
@@ -129,11 +129,12 @@ def _ready(farm: Farm, lot: StockLot, strain: int, shifts: Shifts) -> ReadyStock
 def _fruiting(farm: Farm, lot: StockLot, strain: int, shifts: Shifts) -> FruitingStock:
     card = farm.strain[strain]
     opened = (lot.since - shifts.clock.first_day).days
-    days = [opened + card.pin_days + k * card.rest_days for k in range(len(card.flush_share))]
+    room = room_for(farm, lot, card, "fruiting")
+    after = flush_days(card, room.temp_c)
+    days = [opened + day for day in after]
     picked = sum(day < 0 for day in days) if lot.flushes_picked is None else lot.flushes_picked
     picked = min(picked, len(days))
     if days[picked:] and days[picked] < 0:
-        days[picked:] = [k * card.rest_days for k in range(len(days) - picked)]
-    kg = flush_kg(card, farm.recipe_of(card), farm.bag_of(card))
-    room = room_for(farm, lot, card, "fruiting")
-    return FruitingStock(lot, strain, room, picked, tuple(days[picked:]), kg[picked:])
+        days[picked:] = [day - after[picked] for day in after[picked:]]
+    kg = expected_flush_kg(card, farm.recipe_of(card), farm.bag_of(card), picked)
+    return FruitingStock(lot, strain, room, picked, tuple(days[picked:]), kg)

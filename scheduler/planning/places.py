@@ -100,7 +100,7 @@ def fruit_traffic(flow: StockAndFlow, index: int, pool: Pool) -> Traffic:
     for (strain, p, day, flushes), column in columns.open.items():
         if p == index:
             enters[day].append(column)
-            last = day + problem.flush_day(strain, flushes)
+            last = day + problem.flush_day(strain, flushes, index)
             leaves.append((flow.leave_day(last) + pool.clean_days, column, 1.0))
     standing = Standing()
     for lot in problem.stock.fruiting:

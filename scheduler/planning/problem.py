@@ -5,13 +5,15 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from datetime import date
+from functools import cached_property
 from math import ceil
 from zoneinfo import ZoneInfo
 
 from models.calendar import FarmClock, Week
 from models.farm import Farm, Order, Room, StockLot, Strain
 from models.growth.colonisation import days_to_ready
-from models.growth.flush import flush_kg
+from models.growth.flush import expected_flush_kg, flush_days
+from models.growth.shelf_life import selling_days
 from scheduler.planning.network import Arc, RunKind, RunNetwork, run_kinds
 from scheduler.planning.opening_stock import OpeningStock, read_stock
 from scheduler.planning.shifts import Shifts
@@ -91,7 +93,7 @@ class Problem:
     def colony_pools_for(self, strain: int) -> tuple[int, ...]:
         """Colonisation pools in which a strain grows."""
         card = self.strains[strain]
-        return tuple(k for k, pool in enumerate(self.colony_pools) if card.t_min_c < pool.temp_c < card.t_max_c)
+        return tuple(k for k, pool in enumerate(self.colony_pools) if card.grows_in(pool.temp_c))
 
     def fruit_pools_for(self, strain: int) -> tuple[int, ...]:
         """Fruiting pools whose climate suits a strain."""
@@ -99,14 +101,25 @@ class Problem:
         return tuple(k for k, pool in enumerate(self.fruit_pools) if low <= pool.temp_c <= high)
 
     def flush_kg(self, strain: int) -> tuple[float, ...]:
-        """Kilograms a bag gives in each flush [kg]."""
+        """Kilograms to be expected of an opened bag in each flush [kg]."""
         card = self.strains[strain]
-        return flush_kg(card, self.farm.recipe_of(card), self.farm.bag_of(card))
+        return expected_flush_kg(card, self.farm.recipe_of(card), self.farm.bag_of(card))
 
-    def flush_day(self, strain: int, flush: int) -> int:
-        """Days from opening to flush number ``flush`` (from 1) [d]."""
-        card = self.strains[strain]
-        return card.pin_days + (flush - 1) * card.rest_days
+    def flush_day(self, strain: int, flush: int, pool: int) -> int:
+        """Days from opening in a fruiting pool to flush number ``flush`` (from 1) [d]."""
+        return self._flush_days[strain][pool][flush - 1]
+
+    @cached_property
+    def _flush_days(self) -> tuple[tuple[tuple[int, ...], ...], ...]:
+        return tuple(tuple(flush_days(card, pool.temp_c) for pool in self.fruit_pools) for card in self.strains)
+
+    def quickest_flush_day(self, strain: int, flush: int) -> int:
+        """Days from opening to flush number ``flush`` (from 1) in the quickest fruiting pool [d]."""
+        return min(self.flush_day(strain, flush, pool) for pool in self.fruit_pools_for(strain))
+
+    def selling_days(self, strain: int) -> int:
+        """Days after its pick on which a strain can still be sold [d]."""
+        return selling_days(self.strains[strain], self.farm.site.cold_store_c)
 
     def spot_price(self, strain: int) -> float:
         """Spot price of a strain [currency/kg]: a share of its mean order price, weighted by kg."""
@@ -133,10 +146,12 @@ def longest_life_days(farm: Farm, orders: Sequence[Order]) -> int:
     for strain in farm.strain:
         if strain.code not in wanted:
             continue
-        rooms = [room for room in farm.rooms_of("colonisation") if strain.t_min_c < room.temp_c < strain.t_max_c]
+        rooms = [room for room in farm.rooms_of("colonisation") if strain.grows_in(room.temp_c)]
         slowest = max((days_to_ready(strain, room.temp_c) for room in rooms), default=0)
-        last_flush = strain.pin_days + (len(strain.flush_share) - 1) * strain.rest_days
-        lives.append(DAYS_FROM_LOAD_TO_SHELF + slowest + last_flush + strain.shelf_life_days)
+        low, high = strain.fruiting_temp_c
+        fruiting = [room.temp_c for room in farm.rooms_of("fruiting") if low <= room.temp_c <= high]
+        last_flush = max((flush_days(strain, temp)[-1] for temp in fruiting), default=flush_days(strain)[-1])
+        lives.append(DAYS_FROM_LOAD_TO_SHELF + slowest + last_flush + selling_days(strain, farm.site.cold_store_c))
     return max(lives)
 
 

@@ -277,7 +277,7 @@ class House:
     def _open(self, day: int, strain: int, pool: int, flushes: int, item: Waiting, bags: int) -> None:
         problem, rooms = self.problem, self.problem.fruit_pools[pool]
         kg = problem.flush_kg(strain)
-        days = [day + problem.flush_day(strain, k) for k in range(1, flushes + 1)]
+        days = [day + problem.flush_day(strain, k, pool) for k in range(1, flushes + 1)]
         leave = self.flow.leave_day(days[-1])
         for room, part in self._rooms_with_places(rooms.rooms, bags):
             picks = tuple(FlushPick(self._date(d), k + 1, part * kg[k], 0.0) for k, d in enumerate(days))

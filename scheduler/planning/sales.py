@@ -19,7 +19,7 @@ def add_sales(flow: StockAndFlow, unavoidable: Sequence[float]) -> None:
     for index, (item, lost) in enumerate(zip(problem.order_days, unavoidable, strict=True)):
         wanted = max(0.0, item.kg - lost)
         matrix.constant -= item.penalty * wanted
-        life = problem.strains[item.strain].shelf_life_days
+        life = problem.selling_days(item.strain)
         served = []
         for day in range(item.day - life, item.day + 1):
             if (item.strain, day) in sold:
@@ -37,7 +37,7 @@ def add_sales(flow: StockAndFlow, unavoidable: Sequence[float]) -> None:
     spot_weeks: dict[int, list[tuple[int, float]]] = {}
     for (strain, day), ripe in sorted(flow.ripe.items()):
         price = problem.spot_price(strain) if market.spot_kg_week > 0 else 0.0
-        last = min(day + problem.strains[strain].shelf_life_days, problem.days - 1)
+        last = min(day + problem.selling_days(strain), problem.days - 1)
         for week in range(day // 7, last // 7 + 1) if price > 0 else ():
             spot = matrix.column(gain=price + market.spoilage_per_kg)
             columns.spot[strain, day, week] = spot

@@ -13,7 +13,7 @@ def first_kilogram_day(problem: Problem, strain: int) -> int:
         return problem.days
     ready = min(inoculations) + min(problem.ready_days(strain, pool) for pool in rooms)
     opened = problem.shifts.next_day_with("open", ready)
-    return problem.shifts.next_day_with("pick", opened + problem.flush_day(strain, 1))
+    return problem.shifts.next_day_with("pick", opened + problem.quickest_flush_day(strain, 1))
 
 
 def stock_kilograms(problem: Problem, strain: int) -> list[tuple[int, float]]:
@@ -24,7 +24,7 @@ def stock_kilograms(problem: Problem, strain: int) -> list[tuple[int, float]]:
         if held.strain == strain:
             opened = problem.shifts.next_day_with("open", held.arrival)
             bags = held.lot.bags * (1 - held.loss_pct / 100) + (1 if held.loss_pct else 0)
-            found += [(opened + problem.flush_day(strain, k + 1), bags * share) for k, share in enumerate(kg)]
+            found += [(opened + problem.quickest_flush_day(strain, k + 1), bags * share) for k, share in enumerate(kg)]
     for open_lot in problem.stock.fruiting:
         if open_lot.strain == strain:
             pairs = zip(open_lot.flush_days, open_lot.flush_kg, strict=True)
@@ -37,7 +37,8 @@ def stock_kilograms(problem: Problem, strain: int) -> list[tuple[int, float]]:
                 start = problem.shifts.next_day_with("inoculate", 0)
                 opened = problem.shifts.next_day_with("open", start + quickest)
                 found += [
-                    (opened + problem.flush_day(strain, k + 1), waiting.lot.bags * share) for k, share in enumerate(kg)
+                    (opened + problem.quickest_flush_day(strain, k + 1), waiting.lot.bags * share)
+                    for k, share in enumerate(kg)
                 ]
     return sorted(found)
 

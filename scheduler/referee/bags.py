@@ -49,8 +49,9 @@ def _inoculated(case: Case) -> None:
         room = case.farm.room_called(event.room)
         where = f"{event.lot} in {room.code}"
         case.expect("colonise", where, room.kind == "colonisation", room.kind, "a colonisation room")
-        grows = strain.t_min_c < room.temp_c < strain.t_max_c
-        case.expect("colonise", where, grows, room.temp_c, f"{strain.t_min_c:g} to {strain.t_max_c:g}", "°C")
+        warmest = strain.t_max_c - strain.self_heating_k
+        grows = strain.t_min_c < room.temp_c < warmest
+        case.expect("colonise", where, grows, room.temp_c, f"{strain.t_min_c:g} to {warmest:g}", "°C")
         ready = event.day + timedelta(days=days_to_ready(strain, room.temp_c))
         case.expect("colonise", where, event.ready_day == ready, event.ready_day, ready)
         first, last = _inoculation_window(case, event.lot)
@@ -257,9 +258,9 @@ def _opening(case: Case, opening: Opening) -> None:
         case.expect("flush-days", where, 1 <= opening.flushes <= count, opening.flushes, f"1 to {count}")
         case.expect("flush-days", where, case.inside(opening.day), opening.day, "a day of the plan")
         picked = 0
-        days = [opening.day + timedelta(days=strain.pin_days + k * strain.rest_days) for k in range(count)]
+        days = [opening.day + after for after in case.after_opening(strain, room)]
     kept = days[: opening.flushes - picked]
-    kg = case.flush_kg(strain)
+    kg = case.flush_kg(strain, picked)
     right = [(picked + k + 1, day) for k, day in enumerate(kept) if case.inside(day)]
     found = [(pick.flush, pick.day) for pick in opening.picks]
     case.expect("flush-days", where, found == right, found, right)
@@ -277,12 +278,13 @@ def _opening(case: Case, opening: Opening) -> None:
 
 def stock_flush_days(case: Case, strain: Strain, row: StockLot) -> list[date]:
     """Days of the flushes still to come of a fruiting stock lot."""
-    count = len(strain.flush_share)
-    days = [row.since + timedelta(days=strain.pin_days + k * strain.rest_days) for k in range(count)]
+    room = case.farm.room_called(row.room) if row.room else case.fruiting_rooms(strain)[0]
+    after = case.after_opening(strain, room)
+    days = [row.since + one for one in after]
     picked = row.flushes_picked
     if picked is None:
         picked = sum(day < case.first for day in days)
     left = days[picked:]
     if left and left[0] < case.first:
-        left = [case.first + timedelta(days=k * strain.rest_days) for k in range(len(left))]
+        left = [case.first + one - after[picked] for one in after[picked:]]
     return left

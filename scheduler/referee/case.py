@@ -7,7 +7,8 @@ from functools import cached_property
 from zoneinfo import ZoneInfo
 
 from models.calendar import Week
-from models.farm import Crew, Farm, Order, StockLot, Strain
+from models.farm import Crew, Farm, Order, Room, StockLot, Strain
+from models.growth.flush import flush_days
 from models.plan import Lot, Plan, Run
 from scheduler.referee.verdict import Verdict, Violation
 
@@ -125,7 +126,18 @@ class Case:
         """Strain of a lot."""
         return self.farm.strain_called(self.lots[lot].strain)
 
-    def flush_kg(self, strain: Strain) -> list[float]:
-        """Kilograms a bag gives in each flush [kg]."""
+    def flush_kg(self, strain: Strain, picked: int = 0) -> list[float]:
+        """Kilograms expected in each flush, over the bags that stand when flush ``picked`` + 1 is due [kg]."""
         dry = self.farm.bag_of(strain).wet_kg * (1 - self.farm.recipe_of(strain).water_pct / 100)
-        return [dry * strain.be_pct / 100 * share for share in strain.flush_share]
+        whole = [dry * strain.be_pct / 100 * share for share in strain.flush_share]
+        lost = strain.flush_loss_pct / 100
+        return [kg * (1 - lost) ** max(0, flush - picked) for flush, kg in enumerate(whole)]
+
+    def after_opening(self, strain: Strain, room: Room) -> list[timedelta]:
+        """Time from opening in a room until each flush is ripe."""
+        return [timedelta(days=days) for days in flush_days(strain, room.temp_c)]
+
+    def fruiting_rooms(self, strain: Strain) -> list[Room]:
+        """Fruiting rooms whose temperature suits a strain, in file order."""
+        low, high = strain.fruiting_temp_c
+        return [room for room in self.farm.rooms_of("fruiting") if low <= room.temp_c <= high]

@@ -9,6 +9,7 @@ from datetime import date, timedelta
 from models.calendar import Week
 from models.farm import Strain
 from models.growth.colonisation import days_to_ready
+from models.growth.shelf_life import selling_days
 from models.plan import Delivery
 from scheduler.referee.bags import stock_flush_days
 from scheduler.referee.case import Case
@@ -66,7 +67,7 @@ def _fresh(case: Case) -> None:
         )
         out[sale.strain][sale.day] += sale.spot_kg + sale.spoiled_kg
     for code in {*picked, *out}:
-        life = case.farm.strain_called(code).shelf_life_days
+        life = selling_days(case.farm.strain_called(code), case.farm.site.cold_store_c)
         sold = grown = 0.0
         stale: list[float] = []
         for offset in range(case.days):
@@ -122,13 +123,13 @@ def _peak(items: Sequence[Delivery], supply: Sequence[tuple[date, float]], until
 
 def _first_ripe(case: Case, strain: Strain) -> date:
     """A day before which no new bag can be ripe: the earliest run there can be, in the quickest room."""
-    rooms = [r for r in case.farm.rooms_of("colonisation") if strain.t_min_c < r.temp_c < strain.t_max_c]
+    rooms = [r for r in case.farm.rooms_of("colonisation") if strain.grows_in(r.temp_c)]
     inoculated = earliest_inoculation(case, strain)
     if not rooms or inoculated is None:
         return case.last + timedelta(days=1)
     quickest = min(days_to_ready(strain, room.temp_c) for room in rooms)
     opened = case.next_working(inoculated + timedelta(days=quickest), "open")
-    return case.next_working(opened + timedelta(days=strain.pin_days), "pick")
+    return case.next_working(opened + _quickest(case, strain)[0], "pick")
 
 
 def _stock_supply(case: Case, strain: Strain) -> list[tuple[date, float]]:
@@ -140,19 +141,26 @@ def _stock_supply(case: Case, strain: Strain) -> list[tuple[date, float]]:
             continue
         if row.stage == "fruiting":
             days = stock_flush_days(case, strain, row)
-            found += [(day, row.bags * share) for day, share in zip(days, kg[len(kg) - len(days) :], strict=True)]
+            picked = len(kg) - len(days)
+            left = case.flush_kg(strain, picked)[picked:]
+            found += [(day, row.bags * share) for day, share in zip(days, left, strict=True)]
             continue
         start = max(case.first, row.since)
         if row.stage in ("ready", "cold-held"):
-            start = case.next_working(start, "open") + timedelta(days=strain.pin_days)
+            start = case.next_working(start, "open")
         else:
-            rooms = [r for r in case.farm.rooms_of("colonisation") if strain.t_min_c < r.temp_c < strain.t_max_c]
+            rooms = [r for r in case.farm.rooms_of("colonisation") if strain.grows_in(r.temp_c)]
             span = min((days_to_ready(strain, room.temp_c) for room in rooms), default=0)
             ready = max(case.first, row.since + timedelta(days=span)) if row.stage == "colonising" else case.first
             if row.stage == "cooled":
                 ready = case.first + timedelta(days=span)
-            start = case.next_working(ready, "open") + timedelta(days=strain.pin_days)
-        for flush, share in enumerate(kg):
-            day = start + timedelta(days=strain.rest_days * flush)
-            found.append((day, row.bags * share))
+            start = case.next_working(ready, "open")
+        found += [(start + after, row.bags * share) for after, share in zip(_quickest(case, strain), kg, strict=True)]
     return found
+
+
+def _quickest(case: Case, strain: Strain) -> list[timedelta]:
+    """Least time from opening to each flush in any fruiting room that suits a strain."""
+    return [
+        min(days) for days in zip(*(case.after_opening(strain, r) for r in case.fruiting_rooms(strain)), strict=True)
+    ]
