@@ -21,6 +21,7 @@ from models.plan import (
 from scheduler.planning.columns import SLACK_HOUR_PRICE, SLACK_PLACE_PRICE
 from scheduler.planning.engine import FloatArray
 from scheduler.planning.rooms import Housed
+from scheduler.planning.seldom import heat_limit
 from scheduler.planning.stock_and_flow import StockAndFlow
 from scheduler.planning.unavoidable import unavoidable_kilograms
 
@@ -93,7 +94,7 @@ def hours_of(flow: StockAndFlow, values: FloatArray) -> tuple[CrewHours, ...]:
 
 
 def shortfalls_of(flow: StockAndFlow, values: FloatArray, housed: Housed) -> tuple[Shortfall, ...]:
-    """Limits that the opening stock breaks: bags over the places of a room by day, hours over the shifts."""
+    """Limits that the opening stock breaks: bags over a room's places by day, heat, hours over the shifts."""
     first = flow.problem.clock.first_day
     found = []
     for room in flow.problem.farm.room:
@@ -101,6 +102,12 @@ def shortfalls_of(flow: StockAndFlow, values: FloatArray, housed: Housed) -> tup
             if bags > room.places:
                 over = float(bags - room.places)
                 found.append(Shortfall(f"places {room.code}", first + timedelta(days=day), over, "places"))
+    for index, pool in enumerate(flow.problem.colony_pools):
+        if pool.cooling_w is not None:
+            for day, watts in enumerate(flow.problem.stock_heat(index)):
+                if watts > pool.cooling_w + DUST:
+                    over = watts - pool.cooling_w
+                    found.append(Shortfall(heat_limit(pool), first + timedelta(days=day), over, "W"))
     for (name, day), column in flow.columns.over.items():
         if name.startswith("labour") and values[column] > DUST:
             found.append(Shortfall(name, first + timedelta(days=day), float(values[column]), "h"))
@@ -140,10 +147,8 @@ def account_of(
         (item.short_kg - item.unavoidable_kg) * market.shortage_per_kg / orders[item.order].priority
         for item in deliveries
     )
-    over = sum(
-        item.amount * (SLACK_HOUR_PRICE if item.limit.startswith("labour") else SLACK_PLACE_PRICE)
-        for item in shortfalls
-    )
+    prices = {"h": SLACK_HOUR_PRICE, "places": SLACK_PLACE_PRICE, "W": 0.0}
+    over = sum(item.amount * prices[item.unit] for item in shortfalls)
     return Account(
         sales=sum(item.kg * orders[item.order].price_per_kg for item in deliveries),
         spot=sum(item.spot_kg * spot_price[item.strain] for item in surplus),

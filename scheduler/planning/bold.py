@@ -73,14 +73,12 @@ def keep_back(flow: StockAndFlow, relaxation: Relaxation, part: float = 1.0) -> 
 
     Fills and inoculations may use one half of them (`part` is what stays), openings the other.
     """
-    rates = flow.problem.farm.rates
-    slowest = min(rates.mix_bags_h, rates.inoculate_bags_h, rates.open_bags_h, rates.discard_bags_h)
     bags = 2.0 * len(flow.active)
     for column, places in flow.place_states:
         if flow.matrix.column_high[column] == places:
             relaxation.bound(column, 0.0, places - part * min(bags, 0.02 * places))
-    for row, hours in flow.hour_rows:
-        relaxation.bound_row(row, -np.inf, hours - part * min(bags / slowest, 0.05 * hours))
+    for kept in flow.reserves:
+        relaxation.bound_row(kept.row, -np.inf, kept.high - part * min(bags * kept.per_bag, 0.05 * kept.high))
 
 
 def give_back(flow: StockAndFlow, relaxation: Relaxation) -> None:
@@ -88,8 +86,8 @@ def give_back(flow: StockAndFlow, relaxation: Relaxation) -> None:
     for column, places in flow.place_states:
         if flow.matrix.column_high[column] == places:
             relaxation.bound(column, 0.0, places)
-    for row, hours in flow.hour_rows:
-        relaxation.bound_row(row, -np.inf, hours)
+    for kept in flow.reserves:
+        relaxation.bound_row(kept.row, -np.inf, kept.high)
 
 
 def round_runs(flow: StockAndFlow, values: FloatArray) -> dict[int, float]:

@@ -12,9 +12,10 @@ from scheduler.planning.unavoidable import unavoidable_kilograms
 
 
 def build_model(problem: Problem) -> StockAndFlow:
-    """Columns and rows for every decision and limit of a problem, except the site's supply.
+    """Columns and rows for every decision and limit of a problem, except those of `seldom`.
 
-    Supply rows are many and seldom bind; they are added where a solution breaks them.
+    The site's supply and the heat of rooms take many rows that seldom bind; they are added where a solution breaks
+    them.
     """
     flow = StockAndFlow(problem)
     flow.add_runs()

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from models.farm import SKILLS
 from scheduler.planning.columns import SLACK_HOUR_PRICE
-from scheduler.planning.stock_and_flow import StockAndFlow
+from scheduler.planning.stock_and_flow import Reserve, StockAndFlow
 
 Terms = list[tuple[int, float]]
 
@@ -43,6 +43,8 @@ def add_hands(flow: StockAndFlow) -> None:
     """Columns for hours by crew, skill and day; rows for need, shift length and benches."""
     problem, matrix, columns = flow.problem, flow.matrix, flow.columns
     forced = problem.stock.last_forced_day if problem.stock else -1
+    rates = problem.farm.rates
+    slowest = 1 / min(rates.mix_bags_h, rates.inoculate_bags_h, rates.open_bags_h, rates.discard_bags_h)
     worked: dict[tuple[str, int], Terms] = {}
     for (skill, day), terms in sorted(labour_needs(flow).items(), key=lambda item: (item[0][1], item[0][0])):
         hours: Terms = []
@@ -60,10 +62,12 @@ def add_hands(flow: StockAndFlow) -> None:
         if skill == "inoculate":
             benches = problem.shifts.bench_hours(day)
             if benches is not None:
-                flow.hour_rows.append((matrix.row("benches", day, terms, high=benches), benches))
+                row = matrix.row("benches", day, terms, high=benches)
+                flow.reserves.append(Reserve(row, benches, slowest))
     for team in problem.farm.crew:
         for day in range(problem.days):
             terms = worked.get((team.code, day), [])
             if terms:
                 shift = next(s for skill in SKILLS for s in problem.shifts.on(day, skill) if s.crew is team)
-                flow.hour_rows.append((matrix.row(f"shift {team.code}", day, terms, high=shift.hours), shift.hours))
+                row = matrix.row(f"shift {team.code}", day, terms, high=shift.hours)
+                flow.reserves.append(Reserve(row, shift.hours, slowest))

@@ -11,8 +11,9 @@ from zoneinfo import ZoneInfo
 
 from models.calendar import FarmClock, Week
 from models.farm import Farm, Order, Room, StockLot, Strain
-from models.growth.colonisation import days_to_ready
+from models.growth.colonisation import colonisation_days, days_to_ready
 from models.growth.flush import expected_flush_kg, flush_days
+from models.growth.heat import heat_curve
 from models.growth.shelf_life import selling_days
 from scheduler.planning.network import Arc, RunKind, RunNetwork, run_kinds
 from scheduler.planning.opening_stock import OpeningStock, read_stock
@@ -37,6 +38,11 @@ class Pool:
     def temp_c(self) -> float:
         """Their temperature [°C]."""
         return self.rooms[0].temp_c
+
+    @property
+    def cooling_w(self) -> float | None:
+        """Heat it can carry off [W]; None: not limited. A pool with such a limit holds one room."""
+        return self.rooms[0].cooling_w
 
     @property
     def clean_days(self) -> int:
@@ -95,6 +101,25 @@ class Problem:
         card = self.strains[strain]
         return tuple(k for k, pool in enumerate(self.colony_pools) if card.grows_in(pool.temp_c))
 
+    def bag_heat(self, strain: int, pool: int) -> tuple[float, ...]:
+        """Heat of a bag on each day after its inoculation into a pool [W]."""
+        card, temp_c = self.strains[strain], self.colony_pools[pool].temp_c
+        wet_kg = self.farm.bag_of(card).wet_kg
+        return tuple(wet_kg * heat for heat in heat_curve(card, colonisation_days(card, temp_c)))
+
+    def stock_heat(self, pool: int) -> tuple[float, ...]:
+        """Heat that the colonising bags of the opening stock give off in a pool on each day of the plan [W]."""
+        total = [0.0] * self.days
+        codes = {room.code for room in self.colony_pools[pool].rooms}
+        for lot in self.stock.ready:
+            if lot.lot.stage != "colonising" or lot.room.code not in codes:
+                continue
+            since = (lot.lot.since - self.clock.first_day).days
+            for after, watts in enumerate(self.bag_heat(lot.strain, pool)):
+                if 0 <= since + after < self.days:
+                    total[since + after] += lot.lot.bags * watts
+        return tuple(total)
+
     def fruit_pools_for(self, strain: int) -> tuple[int, ...]:
         """Fruiting pools whose climate suits a strain."""
         low, high = self.strains[strain].fruiting_temp_c
@@ -132,10 +157,11 @@ class Problem:
 
 
 def pools_of(rooms: Sequence[Room]) -> tuple[Pool, ...]:
-    """Group rooms whose temperature and cleaning are the same."""
-    groups: dict[tuple[float, int], list[Room]] = {}
+    """Group rooms whose temperature and cleaning are the same; a room whose heat is limited stands by itself."""
+    groups: dict[tuple[float, int, str], list[Room]] = {}
     for room in rooms:
-        groups.setdefault((room.temp_c, room.clean_days), []).append(room)
+        alone = "" if room.cooling_w is None or room.kind != "colonisation" else room.code
+        groups.setdefault((room.temp_c, room.clean_days, alone), []).append(room)
     return tuple(Pool(tuple(members)) for members in groups.values())
 
 

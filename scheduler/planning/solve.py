@@ -28,7 +28,7 @@ from scheduler.planning.engine import SEED, Answer, FloatArray, Relaxation, bran
 from scheduler.planning.lots import Made, make_lots
 from scheduler.planning.problem import Problem, state_problem
 from scheduler.planning.rooms import House
-from scheduler.planning.supply import Supply, relax_within_supply
+from scheduler.planning.seldom import Key, SeldomRows, relax_within_all
 from scheduler.planning.whole import bounds_of, fix, open_bags, run_candidates, whole_bags
 
 Progress = Callable[[str, float | None, float | None, float | None], None]
@@ -36,7 +36,7 @@ RUN_WINDOWS = (10, 3, 5, 7, 14)
 RESERVES = (1.0, 2.0, 4.0)
 WAIT_COST = 2e-3
 """Slight price of a cooled bag that waits another day: of plans that earn the same, the sooner one is chosen."""
-SUPPLY_ROUNDS = 12
+ROW_ROUNDS = 12
 EXACT_COLUMNS = 900
 EXACT_NODES = 20_000
 RUN_NODES = 400
@@ -80,7 +80,7 @@ class Planner:
         self.relaxation_seconds = 0.0
         self._tell("building the model", None)
         self.flow = build_model(problem)
-        self.supply = Supply(self.flow)
+        self.seldom = SeldomRows(self.flow)
 
     def run(self) -> Plan:
         """Search until the gap is met or the time is over; the best plan found."""
@@ -104,21 +104,21 @@ class Planner:
             self._without_runs(search)
 
     def _relaxed(self, search: _Search) -> tuple[Relaxation, Answer]:
-        """The relaxation within every supply row there is; it may only lower the bound."""
+        """The relaxation within every row there is; it may only lower the bound."""
         started = time.perf_counter()
         self._tell("solving the relaxation", search)
-        relaxation, answer = relax_within_supply(self.flow, self.supply)
+        relaxation, answer = relax_within_all(self.flow, self.seldom)
         search.bound = min(search.bound, answer.objective)
         return relaxation, replace(answer, seconds=time.perf_counter() - started)
 
     def _try_styles(self, search: _Search, relaxation: Relaxation, base: Answer) -> None:
         """Small farms: dive in one style after the other until the gap is met."""
         for number, window in enumerate(RUN_WINDOWS):
-            for _ in range(SUPPLY_ROUNDS):
+            for _ in range(ROW_ROUNDS):
                 broken = self._dive(search, self._fresh(relaxation), base, window)
                 if not broken or (self._time_left() <= 0 and search.plan is not None):
                     break
-                self.supply.add(broken)
+                self.seldom.add(broken)
                 relaxation, base = self._relaxed(search)
             if search.gap <= self.limits.gap:
                 return
@@ -146,13 +146,15 @@ class Planner:
         search.bound = min(search.bound, found.bound)
         if search.gap <= self.limits.gap:
             search.stop = "gap reached"
-        if found.values is None or self.supply.broken(found.values):
+        if found.values is None or self.seldom.broken(found.values):
             return
         runs = {column: float(round(found.values[column])) for column in self.flow.columns.run}
         fix(relaxation, low, high, runs)
         try:
             answer, made = whole_bags(self.flow, relaxation, relaxation.solve(), low, high)
         except Dead:
+            return
+        if self.seldom.broken(answer.known):
             return
         self._offer(search, answer.known, made)
         search.stop = "gap reached" if search.gap <= self.limits.gap else f"runs searched: {found.stop}"
@@ -170,27 +172,29 @@ class Planner:
         relaxation.prefer(self.flow.columns.cooled.values(), -WAIT_COST)
         return relaxation
 
-    def _dive(self, search: _Search, relaxation: Relaxation, base: Answer, window: int) -> list[int]:
-        """Dive to whole runs and bags; the supply slots that the runs break, if they do."""
+    def _dive(self, search: _Search, relaxation: Relaxation, base: Answer, window: int) -> list[Key]:
+        """Dive to whole runs and bags; the limits without a row that it breaks, if it does."""
         low, high = bounds_of(self.flow.matrix)
         try:
             self._tell("choosing runs", search)
             style = Style(window_days=window, sparse=True)
             answer = dive(relaxation, base, run_candidates(self.flow), style, low, high)
-            broken = self.supply.broken(answer.known)
+            broken = self.seldom.broken(answer.known)
             if broken:
                 return broken
             self._tell("making bags whole", search)
             answer, made = whole_bags(self.flow, relaxation, answer, low, high)
         except Dead:
             return []
-        self._offer(search, answer.known, made)
-        return []
+        broken = self.seldom.broken(answer.known)
+        if not broken:
+            self._offer(search, answer.known, made)
+        return broken
 
     def _round_boldly(self, search: _Search, relaxation: Relaxation, base: Answer) -> None:
         """Large farms: one rounding a stage, with more kept back where it failed."""
         reserves = list(RESERVES)
-        for _ in range(SUPPLY_ROUNDS):
+        for _ in range(ROW_ROUNDS):
             if not reserves:
                 return
             low, high = bounds_of(self.flow.matrix)
@@ -201,25 +205,30 @@ class Planner:
                 search.stop = "rounding found no plan"
                 reserves.pop(0)
                 continue
-            broken = self.supply.broken(answer.known)
+            broken = self.seldom.broken(answer.known)
             if not broken:
                 self._offer(search, answer.known, made)
                 search.stop = "gap reached" if search.gap <= self.limits.gap else "one rounding done"
                 return
-            self.supply.add(broken)
+            self.seldom.add(broken)
             relaxation, base = self._relaxed(search)
 
     def _without_runs(self, search: _Search) -> None:
         """The plan that steams nothing: what already stands in the rooms is opened and sold."""
-        relaxation = Relaxation(self.flow.matrix)
-        low, high = bounds_of(self.flow.matrix)
-        fix(relaxation, low, high, dict.fromkeys(self.flow.columns.run, 0.0))
-        try:
-            answer, made = whole_bags(self.flow, relaxation, relaxation.solve(), low, high)
-        except Dead:
-            return
-        search.stop = "no plan with runs found"
-        self._offer(search, answer.known, made)
+        for _ in range(ROW_ROUNDS):
+            relaxation = Relaxation(self.flow.matrix)
+            low, high = bounds_of(self.flow.matrix)
+            fix(relaxation, low, high, dict.fromkeys(self.flow.columns.run, 0.0))
+            try:
+                answer, made = whole_bags(self.flow, relaxation, relaxation.solve(), low, high)
+            except Dead:
+                return
+            broken = self.seldom.broken(answer.known)
+            if not broken:
+                search.stop = "no plan with runs found"
+                self._offer(search, answer.known, made)
+                return
+            self.seldom.add(broken)
 
     def _exact(self, search: _Search, relaxation: Relaxation) -> None:
         """On small farms, search all whole numbers at once; it also lowers the bound."""
@@ -230,7 +239,7 @@ class Planner:
             nodes=EXACT_NODES, listener=lambda _, bound: self._tell("searching whole numbers", search, bound),
         )  # fmt: skip
         search.bound = min(search.bound, found.bound)
-        if found.values is None or self.supply.broken(found.values):
+        if found.values is None or self.seldom.broken(found.values):
             return
         made = make_lots(self.flow, found.values)
         if not any(batch.loss_pct for batch in made.batches):

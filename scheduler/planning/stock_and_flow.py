@@ -16,13 +16,23 @@ from scheduler.planning.network import Arc
 from scheduler.planning.problem import Problem
 
 
+@dataclass(frozen=True, slots=True)
+class Reserve:
+    """A row with its bound, and what one bag adds to it at most."""
+
+    row: int
+    high: float
+    per_bag: float
+
+
 @dataclass
 class StockAndFlow:
     """A matrix under construction with what its columns mean.
 
     ``sources`` of a strain's ready bags are its colonisation pools and, as the index after the last pool, the cold.
     ``ripe`` holds, by strain and day, the columns of bags that ripen then with their kilograms a bag; ``place_states``
-    the columns of bags in rooms with their places; ``hour_rows`` the rows of shifts and benches with their hours.
+    the columns of bags in rooms with their places; ``reserves`` the rows of which rounding keeps a little back: shifts,
+    benches, a room's heat.
     """
 
     problem: Problem
@@ -35,7 +45,7 @@ class StockAndFlow:
     wait_rows: dict[tuple[int, int, int], int] = field(default_factory=dict)
     place_rows: dict[int, dict[int, int]] = field(default_factory=dict)
     place_states: list[tuple[int, float]] = field(default_factory=list)
-    hour_rows: list[tuple[int, float]] = field(default_factory=list)
+    reserves: list[Reserve] = field(default_factory=list)
     _group_index: dict[GroupKey, int] = field(default_factory=dict)
 
     def __post_init__(self) -> None:

@@ -11,6 +11,7 @@ from models.farm import Farm, Order, StockLot
 from models.plan import Plan
 from scheduler.referee.bags import check_bags
 from scheduler.referee.case import Case
+from scheduler.referee.heat import check_heat
 from scheduler.referee.labour import check_labour
 from scheduler.referee.money import check_money
 from scheduler.referee.places import check_places
@@ -37,7 +38,7 @@ def referee(farm: Farm, orders: Sequence[Order], stock: Sequence[StockLot], plan
         How many comparisons were made, and every violation. A malformed plan is a violation, never an exception.
     """
     case = Case(farm, tuple(orders), tuple(stock), plan)
-    for check in (check_runs, check_bags, check_places, check_labour, check_sales, check_money):
+    for check in (check_runs, check_bags, check_places, check_heat, check_labour, check_sales, check_money):
         try:
             check(case)
         except (KeyError, IndexError, ValueError, TypeError, AttributeError) as error:

@@ -57,5 +57,5 @@ def _costs(case: Case) -> dict[str, float]:
         "energy": -sum(run.energy_cost for run in plan.runs),
         "labour": -sum(item.hours * wages[item.crew] for item in plan.labour),
         "spoilage": -spoiled * farm.market.spoilage_per_kg,
-        "over_limits": -sum(item.amount * (1000.0 if item.unit == "h" else 100.0) for item in plan.shortfalls),
+        "over_limits": -sum(item.amount * {"h": 1000.0, "W": 0.0}.get(item.unit, 100.0) for item in plan.shortfalls),
     }

@@ -7,10 +7,12 @@ weeks 0 to N - 3 are loaded and the weeks 2 to N - 1 are sold. A bag costs 2 kg 
 
 from __future__ import annotations
 
+from datetime import date
+
 import pytest
 
 from models.calendar import Week
-from models.farm import Farm
+from models.farm import Farm, StockLot
 from models.plan import Plan
 from scheduler.planning import SolveLimits, plan_weeks
 from scheduler.referee import referee
@@ -73,6 +75,29 @@ def rooms(shelf: int = 100, wet: int = 100, clean_days: int = 0, cool: int = 100
         {"code": "shelf", "kind": "colonisation", "places": shelf, "temp_c": 22},
         {"code": "wet", "kind": "fruiting", "places": wet, "temp_c": 15, "clean_days": clean_days},
     ]
+
+
+def test_heat_of_the_room_binds() -> None:
+    """A bag of 2 kg gives off 0.482 W on the fourth of its seven days (0.241 W/kg): 2.42 W carry five of them."""
+    warm = rooms()
+    warm[1]["cooling_w"] = 2.42
+    assert_bags_a_week(planned(tiny(room=warm)), 5)
+
+
+def test_heat_of_the_opening_stock_is_listed() -> None:
+    """Eight bags of the Friday before pass 2.42 W on Monday (3.86 W) and Tuesday (2.67 W): no one can help it."""
+    warm = rooms()
+    warm[1]["cooling_w"] = 2.42
+    farm = tiny(room=warm)
+    stock = [StockLot(lot="27W02-AAA-1", strain="AAA", stage="colonising", bags=8, since=date(2027, 1, 15))]
+    plan = plan_weeks(farm, [friday(20)], stock, START, 4, limits=EXACT)
+    assert referee(farm, [friday(20)], stock, plan).violations == ()
+    listed = {(fall.limit, fall.day.isoformat()): fall.amount for fall in plan.shortfalls}
+    assert listed == pytest.approx(
+        {("heat shelf", "2027-01-18"): 3.862 - 2.42, ("heat shelf", "2027-01-19"): 2.669 - 2.42}, abs=0.01
+    )
+    assert plan.money.over_limits == 0
+    assert [run.bags["AAA"] for run in plan.runs] == [5] * (len(plan.all_weeks) - 2)
 
 
 def test_colonisation_places_bind() -> None:

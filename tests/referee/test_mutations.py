@@ -197,6 +197,17 @@ def test_places_are_counted_to_the_bag() -> None:
         assert kind in {violation.rule for violation in verdict.violations}, code
 
 
+def test_heat_of_a_room_is_held_by_the_day() -> None:
+    """Ten bags a week give off 4.8 W at their peak, more than 4 W, less than 5 W."""
+    for cooling_w, broken in ((4.0, True), (5.0, False)):
+        card = farm().model_dump(by_alias=True)
+        for room in card["room"]:
+            if room["code"] == "shelf":
+                room["cooling_w"] = cooling_w
+        verdict = referee(Farm.model_validate(card), orders(), [], good_plan())
+        assert ("room-heat" in {violation.rule for violation in verdict.violations}) == broken
+
+
 def test_supply_is_held_by_the_quarter_hour() -> None:
     """A 4 kW element beside a base load of 1 kW passes a supply of 4.5 kW."""
     card = farm().model_dump(by_alias=True)
