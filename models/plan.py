@@ -137,7 +137,7 @@ class Discard:
 
 @dataclass(frozen=True, slots=True)
 class Delivery:
-    """What one order line gets on one delivery day.
+    """What one order line gets on one delivery day; ``instead`` is the part of ``kg`` in other strains [kg, by code].
 
     Attributes
     ----------
@@ -155,16 +155,21 @@ class Delivery:
     kg: float
     short_kg: float
     unavoidable_kg: float
+    instead: dict[str, float] = field(default_factory=dict)
 
 
 @dataclass(frozen=True, slots=True)
 class Surplus:
-    """Kilograms of one strain that left on one day other than by order: sold on the spot, or spoiled after picking."""
+    """Kilograms of one strain that left on one day other than by order: sold on the spot, or spoiled after picking.
+
+    ``cheap_kg`` is the part of ``spot_kg`` that went at the lower of the two prices [kg].
+    """
 
     strain: str
     day: date
     spot_kg: float
     spoiled_kg: float
+    cheap_kg: float = 0.0
 
 
 @dataclass(frozen=True, slots=True)

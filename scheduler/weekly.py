@@ -43,14 +43,13 @@ class WeekRow:
     money: float = 0.0
 
 
-def spot_prices(farm: Farm, orders: Sequence[Order]) -> dict[str, float]:
-    """Spot price by strain: a share of the mean order price, weighted by kg [currency/kg]."""
+def mean_prices(farm: Farm, orders: Sequence[Order]) -> dict[str, float]:
+    """Mean order price by strain, weighted by kg; 0 without orders [currency/kg]."""
     prices = {}
     for strain in farm.strain:
         rows = [order for order in orders if order.strain == strain.code]
         kg = sum(order.kg for order in rows)
-        mean = sum(order.kg * order.price_per_kg for order in rows) / kg if kg else 0.0
-        prices[strain.code] = farm.market.spot_price_share * mean
+        prices[strain.code] = sum(order.kg * order.price_per_kg for order in rows) / kg if kg else 0.0
     return prices
 
 
@@ -99,7 +98,7 @@ def _add_making(farm: Farm, plan: Plan, clock: FarmClock, rows: dict[Week, WeekR
         here.labour_h += work.hours
         here.money -= work.hours * wages[work.crew]
     for short in plan.shortfalls:
-        rows[Week.of(short.day)].money -= short.amount * (1000.0 if short.unit == "h" else 100.0)
+        rows[Week.of(short.day)].money -= short.amount * {"h": 1000.0, "W": 0.0}.get(short.unit, 100.0)
 
 
 def _add_selling(farm: Farm, orders: Sequence[Order], plan: Plan, rows: dict[Week, WeekRow]) -> None:
@@ -117,11 +116,13 @@ def _add_selling(farm: Farm, orders: Sequence[Order], plan: Plan, rows: dict[Wee
         here.short_kg += item.short_kg
         here.unavoidable_kg += item.unavoidable_kg
         order = orders[item.order]
-        here.money += item.kg * order.price_per_kg
+        other = sum(item.instead.values())
+        here.money += (item.kg - (1 - market.substitute_price_share) * other) * order.price_per_kg
         here.money -= (item.short_kg - item.unavoidable_kg) * market.shortage_per_kg / order.priority
-    prices = spot_prices(farm, orders)
+    prices = mean_prices(farm, orders)
     for sale in plan.surplus:
-        rows[Week.of(sale.day)].money += sale.spot_kg * prices[sale.strain] - sale.spoiled_kg * market.spoilage_per_kg
+        share = market.spot_price_share * (sale.spot_kg - sale.cheap_kg) + market.spot_more_price_share * sale.cheap_kg
+        rows[Week.of(sale.day)].money += share * prices[sale.strain] - sale.spoiled_kg * market.spoilage_per_kg
 
 
 def room_nights(farm: Farm, plan: Plan, clock: FarmClock) -> dict[str, list[int]]:

@@ -33,6 +33,10 @@ class Order(FarmModel):
     """Last ISO week; blank: without end."""
     priority: Annotated[int, Field(ge=1, le=9)] = 1
     """1 is the first to be filled; a shortage costs shortage_per_kg over this."""
+    accepts: tuple[str, ...] = ()
+    """Codes of strains that the customer takes instead, with spaces between them."""
+    part: bool = True
+    """Whether a part of it is taken: yes, or no for all or nothing on each day."""
 
     @model_validator(mode="after")
     def _first_before_last(self) -> Order:
@@ -40,6 +44,12 @@ class Order(FarmModel):
             raise ValueError(
                 f"last_week not before first_week was expected; found {self.first_week} to {self.last_week}"
             )
+        return self
+
+    @model_validator(mode="after")
+    def _accepts_others(self) -> Order:
+        if self.strain in self.accepts or len(set(self.accepts)) < len(self.accepts):
+            raise ValueError(f"other strains than {self.strain}, each once, were expected; found {list(self.accepts)}")
         return self
 
     def day_in(self, week: Week) -> date | None:

@@ -51,7 +51,7 @@ class Recipe(FarmModel):
         if abs(total - 100) > 0.01:
             raise ValueError(f"shares dry_pct of the ingredients that add up to 100 were expected; found {total:g}")
         for key in ("dry_cp_kj_kg_k", "cost_per_kg"):
-            if key in self.model_fields_set:
+            if getattr(self, key) != type(self).model_fields[key].default:
                 raise ValueError(f"{key} of each ingredient, and none of the whole mix, was expected; found both")
         wettest = 100 * (1 - 1 / self.bought_kg_per_dry_kg)
         if wettest > self.water_pct:

@@ -59,5 +59,25 @@ class Market(FarmModel):
     """Price of surplus on the spot market, over the strain's mean order price [0-1]."""
     spot_kg_week: NotNegative = 0.0
     """Most that the spot market takes in a week [kg]."""
+    spot_more_price_share: NotNegative = 0.25
+    """Price of what goes beyond that, over the strain's mean order price [0-1]; not above spot_price_share."""
+    spot_more_kg_week: NotNegative = 0.0
+    """Most that the spot market takes in a week at that price [kg]."""
+    substitute_price_share: NotNegative = 0.9
+    """Price of a strain that a customer takes instead, over the price of the order [0-1]."""
     spoilage_per_kg: NotNegative = 0.0
     """Cost of getting rid of a kilogram nobody takes [currency/kg]."""
+
+    @model_validator(mode="after")
+    def _falling_price(self) -> Market:
+        if self.spot_more_kg_week > 0 and self.spot_more_price_share > self.spot_price_share:
+            raise ValueError(
+                f"spot_more_price_share of at most spot_price_share ({self.spot_price_share:g}) was expected;"
+                f" found {self.spot_more_price_share:g}"
+            )
+        return self
+
+    @property
+    def spot_steps(self) -> tuple[tuple[float, float], ...]:
+        """Share of the mean order price [-] and most kilograms a week [kg] of each step of the spot market."""
+        return ((self.spot_price_share, self.spot_kg_week), (self.spot_more_price_share, self.spot_more_kg_week))

@@ -133,3 +133,30 @@ def weekday(text: str) -> str:
             return name[:3]
     near = nearest_choice(word, DAY_NAMES)
     raise CellError(f"a weekday ({', '.join(WEEKDAYS)})", shown(text), near[:3])
+
+
+def codes(text: str) -> tuple[str, ...]:
+    """Read codes with spaces, commas, semicolons or slashes between them.
+
+    Examples
+    --------
+    >>> codes("LIO ERY"), codes("LIO/ERY")
+    (('LIO', 'ERY'), ('LIO', 'ERY'))
+    """
+    return tuple(re.split(r"[\s,;/]+", text.strip()))
+
+
+def yes_or_no(text: str) -> bool:
+    """Read yes or no, in any case and as people shorten it.
+
+    Raises
+    ------
+    CellError
+        It is neither.
+    """
+    word = text.lower().rstrip(".")
+    if word in {"yes", "y", "true", "1", "x"}:
+        return True
+    if word in {"no", "n", "false", "0"}:
+        return False
+    raise CellError("yes or no", shown(text), nearest_choice(word, ("yes", "no")))

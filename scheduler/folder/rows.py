@@ -9,7 +9,7 @@ from pydantic import BaseModel, ValidationError
 
 from models.farm.references import choices_in_words, nearest_choice
 from scheduler.errors import Finding
-from scheduler.folder.cells import CellError, day, iso_week, number, weekday, whole_number
+from scheduler.folder.cells import CellError, codes, day, iso_week, number, weekday, whole_number, yes_or_no
 from scheduler.folder.plain_words import expected_and_found
 from scheduler.folder.table_file import Columns, Table
 
@@ -22,6 +22,8 @@ _OTHER_COLUMNS: Mapping[str, Callable[[str], object]] = {
     "first_week": iso_week,
     "last_week": iso_week,
     "since": day,
+    "accepts": codes,
+    "part": yes_or_no,
 }
 
 

@@ -23,7 +23,6 @@ from scheduler.planning.engine import FloatArray
 from scheduler.planning.rooms import Housed
 from scheduler.planning.seldom import heat_limit
 from scheduler.planning.stock_and_flow import StockAndFlow
-from scheduler.planning.unavoidable import unavoidable_kilograms
 
 DUST = 1e-7
 
@@ -49,38 +48,6 @@ def picked_openings(
             picks.append(replace(pick, kg=kg))
         opened.append(replace(opening, picks=tuple(picks)))
     return tuple(opened)
-
-
-def deliveries_of(flow: StockAndFlow, values: FloatArray) -> tuple[Delivery, ...]:
-    """What every order line gets on every delivery day, in order of day and row."""
-    unavoidable = unavoidable_kilograms(flow.problem)
-    first = flow.problem.clock.first_day
-    found = []
-    served: dict[int, float] = {}
-    for (index, _), column in flow.columns.serve.items():
-        served[index] = served.get(index, 0.0) + max(0.0, float(values[column]))
-    for index, (item, lost) in enumerate(zip(flow.problem.order_days, unavoidable, strict=True)):
-        kg = served.get(index, 0.0)
-        kg = item.kg if kg > item.kg - DUST else (0.0 if kg < DUST else kg)
-        short = item.kg - kg
-        order = flow.problem.orders[item.order]
-        day = first + timedelta(days=item.day)
-        found.append(Delivery(item.order, order.customer, order.strain, day, item.kg, kg, short, min(lost, short)))
-    return tuple(sorted(found, key=lambda d: (d.day, d.order)))
-
-
-def surplus_of(flow: StockAndFlow, values: FloatArray) -> tuple[Surplus, ...]:
-    """Spot sales by strain and day."""
-    first = flow.problem.clock.first_day
-    sold: dict[tuple[int, int], float] = {}
-    for (strain, day, week), column in flow.columns.spot.items():
-        if values[column] > DUST:
-            sale = max(day, 7 * week)
-            sold[sale, strain] = sold.get((sale, strain), 0.0) + float(values[column])
-    return tuple(
-        Surplus(flow.problem.strains[strain].code, first + timedelta(days=day), kg, 0.0)
-        for (day, strain), kg in sorted(sold.items())
-    )
 
 
 def hours_of(flow: StockAndFlow, values: FloatArray) -> tuple[CrewHours, ...]:
@@ -128,7 +95,7 @@ def account_of(
 ) -> Account:
     """The money of a plan by line [currency]."""
     orders, market = flow.problem.orders, farm.market
-    spot_price = {strain.code: flow.problem.spot_price(k) for k, strain in enumerate(farm.strain)}
+    mean_price = {strain.code: flow.problem.mean_price(k) for k, strain in enumerate(farm.strain)}
     wage = {crew.code: crew.cost_per_h for crew in farm.crew}
     materials = spawn = 0.0
     for run in runs:
@@ -150,8 +117,16 @@ def account_of(
     prices = {"h": SLACK_HOUR_PRICE, "places": SLACK_PLACE_PRICE, "W": 0.0}
     over = sum(item.amount * prices[item.unit] for item in shortfalls)
     return Account(
-        sales=sum(item.kg * orders[item.order].price_per_kg for item in deliveries),
-        spot=sum(item.spot_kg * spot_price[item.strain] for item in surplus),
+        sales=sum(
+            (item.kg - (1 - market.substitute_price_share) * sum(item.instead.values()))
+            * orders[item.order].price_per_kg
+            for item in deliveries
+        ),
+        spot=sum(
+            mean_price[item.strain]
+            * ((item.spot_kg - item.cheap_kg) * market.spot_price_share + item.cheap_kg * market.spot_more_price_share)
+            for item in surplus
+        ),
         shortage=-shortage,
         materials=-materials,
         spawn=-spawn,

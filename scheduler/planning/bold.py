@@ -11,12 +11,12 @@ from math import floor
 
 import numpy as np
 
-from scheduler.planning.dive import WHOLE_TOLERANCE, Dead, fraction
+from scheduler.planning.dive import WHOLE_TOLERANCE, Dead, dive, fraction
 from scheduler.planning.engine import Answer, FloatArray, Relaxation, branch
 from scheduler.planning.lots import Made, make_lots
 from scheduler.planning.matrix import Matrix
 from scheduler.planning.stock_and_flow import StockAndFlow
-from scheduler.planning.whole import allow_discards, fix, whole_losses
+from scheduler.planning.whole import FILLED_STYLE, allow_discards, filled_candidates, fix, whole_losses
 
 ROUNDING_SECONDS = 20.0
 ROUNDING_NODES = 2_000
@@ -58,7 +58,7 @@ def bold_plan(
     assert answer.values is not None  # noqa: S101
     fix(relaxation, low, high, round_openings(flow, answer.values))
     give_back(flow, relaxation)
-    return _solved(relaxation), made
+    return dive(relaxation, _solved(relaxation), filled_candidates(flow), FILLED_STYLE, low, high), made
 
 
 def _solved(relaxation: Relaxation) -> Answer:

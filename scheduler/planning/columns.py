@@ -34,8 +34,9 @@ class Columns:
     cooled: dict[tuple[int, int], int] = field(default_factory=dict)  # strain, day: bags still to inoculate
     drop_cooled: dict[tuple[int, int], int] = field(default_factory=dict)  # strain, day
     drop_ready: dict[tuple[int, int, int], int] = field(default_factory=dict)  # strain, source, day
-    serve: dict[tuple[int, int], int] = field(default_factory=dict)  # order day (index), pick day
+    serve: dict[tuple[int, int, int], int] = field(default_factory=dict)  # order day (index), strain, pick day
+    filled: dict[int, int] = field(default_factory=dict)  # order day (index): 1 where all of it is delivered
     picked: dict[tuple[int, int], list[int]] = field(default_factory=dict)  # strain, day: all that is sold of it
-    spot: dict[tuple[int, int, int], int] = field(default_factory=dict)  # strain, pick day, week of the sale
+    spot: dict[tuple[int, int, int, int], int] = field(default_factory=dict)  # strain, pick day, week of sale, step
     hours: dict[tuple[int, str, int], int] = field(default_factory=dict)  # crew, skill, day
     over: dict[tuple[str, int], int] = field(default_factory=dict)  # limit, day

@@ -7,10 +7,11 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, field, replace
-from math import floor
+from math import ceil, floor
 
 from models.calendar import Week
 from models.plan import Lot, Run
+from scheduler.planning.dive import WHOLE_TOLERANCE
 from scheduler.planning.engine import FloatArray
 from scheduler.planning.network import Arc
 from scheduler.planning.stock_and_flow import StockAndFlow
@@ -170,11 +171,30 @@ def _inoculate(flow: StockAndFlow, values: FloatArray, made: Made, waiting: dict
             by_strain.setdefault(strain, []).append((day, pool, bags))
     for strain, queue in waiting.items():
         queue.sort(key=lambda item: (item.last, item.first, item.moment, item.lot))
-        for day, pool, bags in sorted(by_strain.get(strain, ())):
-            _take(flow, made, queue, strain, pool, day, bags)
+        planned, dropped = 0.0, 0
+        inoculated = sorted(by_strain.get(strain, ()))
+        for day in flow.inoculation_days:
+            while inoculated and inoculated[0][0] == day:
+                _, pool, bags = inoculated.pop(0)
+                _take(flow, made, queue, strain, pool, day, bags)
+            # Bags that the model drops hold no cooling place from the next day on.
+            planned += float(values[flow.columns.drop_cooled[strain, day]])
+            dropped += _drop(made, queue, day, ceil(planned - WHOLE_TOLERANCE) - dropped)
         for left in queue:
             if left.bags:
                 made.spoiled.append((left.lot, min(left.last, flow.problem.days - 1), left.bags))
+
+
+def _drop(made: Made, queue: Sequence[_Cooled], day: int, bags: int) -> int:
+    """Drop cooled bags, those first that would spoil first; how many there were to drop."""
+    gone = 0
+    for item in queue:
+        count = min(item.bags, bags - gone) if item.first <= day <= item.last else 0
+        if count > 0:
+            item.bags -= count
+            gone += count
+            made.spoiled.append((item.lot, day, count))
+    return gone
 
 
 def _take(

@@ -61,6 +61,8 @@ class OrderDay:
     price: float
     penalty: float
     priority: int
+    accepts: tuple[int, ...] = ()
+    part: bool = True
 
 
 @dataclass(frozen=True)
@@ -146,14 +148,13 @@ class Problem:
         """Days after its pick on which a strain can still be sold [d]."""
         return selling_days(self.strains[strain], self.farm.site.cold_store_c)
 
-    def spot_price(self, strain: int) -> float:
-        """Spot price of a strain [currency/kg]: a share of its mean order price, weighted by kg."""
+    def mean_price(self, strain: int) -> float:
+        """Mean order price of a strain, weighted by kg; 0 without orders [currency/kg]."""
         code = self.strains[strain].code
         rows = [order for order in self.orders if order.strain == code]
         if not rows:
             return 0.0
-        mean = sum(order.kg * order.price_per_kg for order in rows) / sum(order.kg for order in rows)
-        return self.farm.market.spot_price_share * mean
+        return sum(order.kg * order.price_per_kg for order in rows) / sum(order.kg for order in rows)
 
 
 def pools_of(rooms: Sequence[Room]) -> tuple[Pool, ...]:
@@ -199,6 +200,8 @@ def order_days_of(farm: Farm, orders: Sequence[Order], weeks: Sequence[Week], fi
                         order.price_per_kg,
                         penalty,
                         order.priority,
+                        tuple(index[code] for code in order.accepts),
+                        order.part,
                     )
                 )
     return tuple(sorted(found, key=lambda item: (item.day, item.strain, item.priority, item.order)))

@@ -13,14 +13,7 @@ from models.calendar import Week
 from models.farm import Farm, Order, StockLot
 from models.plan import Plan, SolveReport
 from scheduler.errors import NoPlanError
-from scheduler.planning.account import (
-    account_of,
-    deliveries_of,
-    hours_of,
-    picked_openings,
-    shortfalls_of,
-    surplus_of,
-)
+from scheduler.planning.account import account_of, hours_of, picked_openings, shortfalls_of
 from scheduler.planning.bold import bold_plan
 from scheduler.planning.build import build_model
 from scheduler.planning.dive import Dead, Style, dive
@@ -29,6 +22,7 @@ from scheduler.planning.lots import Made, make_lots
 from scheduler.planning.problem import Problem, state_problem
 from scheduler.planning.rooms import House
 from scheduler.planning.seldom import Key, SeldomRows, relax_within_all
+from scheduler.planning.sold import deliveries_of, surplus_of
 from scheduler.planning.whole import bounds_of, fix, open_bags, run_candidates, whole_bags
 
 Progress = Callable[[str, float | None, float | None, float | None], None]

@@ -47,18 +47,26 @@ def unavoidable_kilograms(problem: Problem) -> tuple[float, ...]:
     """For each order day, the kilograms that cannot be delivered whatever is done [kg].
 
     All kilograms the stock can give by a day, whatever was sold of them before, serve the earliest orders first and the
-    better priority first on one day.
+    better priority first on one day. An order that is taken whole or not at all gets none where they do not suffice.
+    From an order that accepts other strains, all that the stock could give of these is taken off.
     """
     short = [0.0] * len(problem.order_days)
-    for strain in range(len(problem.strains)):
-        first = first_kilogram_day(problem, strain)
-        supply = stock_kilograms(problem, strain)
-        given = 0.0
-        for index, item in enumerate(problem.order_days):
-            if item.strain != strain or item.day >= first:
-                continue
-            ripe = sum(kg for day, kg in supply if day <= item.day)
-            served = min(item.kg, max(0.0, ripe - given))
-            given += served
-            short[index] = item.kg - served
+    strains = range(len(problem.strains))
+    first = [first_kilogram_day(problem, strain) for strain in strains]
+    supply = [stock_kilograms(problem, strain) for strain in strains]
+    given = [0.0 for _ in strains]
+    for index, item in enumerate(problem.order_days):
+        if item.day >= min(first[strain] for strain in (item.strain, *item.accepts)):
+            continue
+        served = min(item.kg, max(0.0, _ripe(supply[item.strain], item.day) - given[item.strain]))
+        if not item.part and served < item.kg:
+            served = 0.0
+        given[item.strain] += served
+        other = sum(_ripe(supply[strain], item.day) for strain in item.accepts)
+        lost = max(0.0, item.kg - served - other)
+        short[index] = lost if item.part or lost == item.kg else 0.0
     return tuple(short)
+
+
+def _ripe(supply: list[tuple[int, float]], until: int) -> float:
+    return sum(kg for day, kg in supply if day <= until)

@@ -11,6 +11,7 @@ from scheduler.planning.matrix import Matrix
 from scheduler.planning.stock_and_flow import StockAndFlow
 
 BAG_STYLE = Style(window_days=7, sparse=False)
+FILLED_STYLE = Style(window_days=7, sparse=True)
 FREE = float("inf")
 
 
@@ -39,6 +40,12 @@ def opening_candidates(flow: StockAndFlow) -> list[Candidate]:
     stock = flow.problem.stock.fruiting
     found += [Candidate(column, stock[lot].strain, 0) for (lot, _), column in flow.columns.keep.items()]
     return found
+
+
+def filled_candidates(flow: StockAndFlow) -> list[Candidate]:
+    """Orders that are taken whole or not at all: one lane for each strain."""
+    days = flow.problem.order_days
+    return [Candidate(column, days[index].strain, days[index].day) for index, column in flow.columns.filled.items()]
 
 
 def allow_discards(flow: StockAndFlow, relaxation: Relaxation, high: FloatArray) -> None:
@@ -101,7 +108,8 @@ def open_bags(flow: StockAndFlow, made: Made, relaxation: Relaxation, low: Float
     answer = relaxation.solve()
     if answer.values is None:
         raise Dead
-    return dive(relaxation, answer, opening_candidates(flow), BAG_STYLE, low, high)
+    answer = dive(relaxation, answer, opening_candidates(flow), BAG_STYLE, low, high)
+    return dive(relaxation, answer, filled_candidates(flow), FILLED_STYLE, low, high)
 
 
 def fix(relaxation: Relaxation, low: FloatArray, high: FloatArray, values: dict[int, float]) -> None:

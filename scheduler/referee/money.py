@@ -24,10 +24,17 @@ def _income(case: Case) -> dict[str, float]:
     for strain in case.farm.strain:
         rows = [order for order in case.orders if order.strain == strain.code]
         kg = sum(order.kg for order in rows)
-        prices[strain.code] = market.spot_price_share * sum(o.kg * o.price_per_kg for o in rows) / kg if kg else 0.0
+        prices[strain.code] = sum(o.kg * o.price_per_kg for o in rows) / kg if kg else 0.0
+    sales = spot = 0.0
+    for item in plan.deliveries:
+        price, other = case.orders[item.order].price_per_kg, sum(item.instead.values())
+        sales += price * (item.kg - other) + price * market.substitute_price_share * other
+    for sale in plan.surplus:
+        spot += prices[sale.strain] * market.spot_price_share * (sale.spot_kg - sale.cheap_kg)
+        spot += prices[sale.strain] * market.spot_more_price_share * sale.cheap_kg
     return {
-        "sales": sum(item.kg * case.orders[item.order].price_per_kg for item in plan.deliveries),
-        "spot": sum(sale.spot_kg * prices[sale.strain] for sale in plan.surplus),
+        "sales": sales,
+        "spot": spot,
         "shortage": -sum(
             (item.short_kg - item.unavoidable_kg) * market.shortage_per_kg / case.orders[item.order].priority
             for item in plan.deliveries

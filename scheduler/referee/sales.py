@@ -46,6 +46,12 @@ def _deliveries(case: Case) -> None:
             order = case.orders[item.order]
             same = (order.customer, order.strain) == (item.customer, item.strain)
             case.expect("deliver", where, same, (item.customer, item.strain), (order.customer, order.strain))
+            if not order.part:
+                whole = min(abs(item.kg), abs(item.kg - item.ordered_kg)) <= 1e-6
+                case.expect("part", where, whole, f"{item.kg:g}", f"0 or {item.ordered_kg:g}", "kg")
+            others = set(item.instead) <= set(order.accepts) and min(item.instead.values(), default=0.0) >= -1e-9
+            case.expect("substitute", where, others, sorted(item.instead), order.accepts)
+            case.at_most("substitute", where, sum(item.instead.values()), item.kg, "kg", 1e-6)
         ok = -1e-9 <= item.unavoidable_kg <= item.short_kg + 1e-6
         case.expect("unavoidable", where, ok, item.unavoidable_kg, f"0 to {item.short_kg:g}", "kg")
     case.expect("deliver", "deliveries", len(seen) == len(wanted), len(seen), f"all {len(wanted)} order days")
@@ -59,7 +65,9 @@ def _fresh(case: Case) -> None:
         for pick in opening.picks:
             picked[case.lots[opening.lot].strain][pick.day] += pick.kg
     for item in case.plan.deliveries:
-        out[item.strain][item.day] += item.kg
+        out[item.strain][item.day] += item.kg - sum(item.instead.values())
+        for code, kg in item.instead.items():
+            out[code][item.day] += kg
     for sale in case.plan.surplus:
         ok = min(sale.spot_kg, sale.spoiled_kg) >= -1e-9 and case.inside(sale.day)
         case.expect(
@@ -83,11 +91,16 @@ def _fresh(case: Case) -> None:
 
 
 def _spot(case: Case) -> None:
-    weeks: dict[Week, float] = defaultdict(float)
+    dear: dict[Week, float] = defaultdict(float)
+    cheap: dict[Week, float] = defaultdict(float)
     for sale in case.plan.surplus:
-        weeks[Week.of(sale.day)] += sale.spot_kg
-    for week, kg in weeks.items():
+        ok = -1e-9 <= sale.cheap_kg <= sale.spot_kg + 1e-9
+        case.expect("spot", f"{sale.strain} on {sale.day}", ok, sale.cheap_kg, f"0 to {sale.spot_kg:g}", "kg")
+        dear[Week.of(sale.day)] += sale.spot_kg - sale.cheap_kg
+        cheap[Week.of(sale.day)] += sale.cheap_kg
+    for week, kg in dear.items():
         case.at_most("spot", str(week), kg, case.farm.market.spot_kg_week, "kg")
+        case.at_most("spot", f"{week}, cheap", cheap[week], case.farm.market.spot_more_kg_week, "kg")
 
 
 def _unavoidable(case: Case) -> None:
@@ -101,14 +114,17 @@ def _unavoidable(case: Case) -> None:
         lost = 0.0
         for item in sorted(items, key=lambda i: (i.day, i.order)):
             where = f"{strain.code} by {item.day}"
-            if item.day >= first:
+            others = [case.farm.strain_called(code) for code in case.orders[item.order].accepts]
+            if item.day >= min([first, *(_first_ripe(case, other) for other in others)]):
                 case.at_most("unavoidable", where, item.unavoidable_kg, 0.0, "kg")
                 continue
+            ripe = sum(kg for other in others for day, kg in _stock_supply(case, other) if day <= item.day)
+            case.at_most("unavoidable", where, item.unavoidable_kg, max(0.0, item.ordered_kg - ripe), "kg")
             lost += item.unavoidable_kg
-            case.at_most("unavoidable", where, lost, _peak(items, supply, item.day), "kg")
+            case.at_most("unavoidable", where, lost, _peak(case, items, supply, item.day), "kg")
 
 
-def _peak(items: Sequence[Delivery], supply: Sequence[tuple[date, float]], until: date) -> float:
+def _peak(case: Case, items: Sequence[Delivery], supply: Sequence[tuple[date, float]], until: date) -> float:
     """Kilograms short by a day when every order takes what is ripe as it comes."""
     given = short = 0.0
     for item in sorted(items, key=lambda i: (i.day, i.order)):
@@ -116,6 +132,8 @@ def _peak(items: Sequence[Delivery], supply: Sequence[tuple[date, float]], until
             break
         ripe = sum(kg for day, kg in supply if day <= item.day)
         served = min(item.ordered_kg, max(0.0, ripe - given))
+        if served < item.ordered_kg and not case.orders[item.order].part:
+            served = 0.0
         given += served
         short += item.ordered_kg - served
     return short

@@ -56,6 +56,7 @@ def plan_document(farm: Farm, orders: Sequence[Order], plan: Plan, verdict: Verd
                 "kg": _kg(item.kg),
                 "short_kg": _kg(item.short_kg),
                 "unavoidable_kg": _kg(item.unavoidable_kg),
+                "instead": {code: _kg(kg) for code, kg in item.instead.items()},
             }
             for item in plan.deliveries
         ],

@@ -60,6 +60,7 @@ def show_plan(console: Console, farm: Farm, orders: Sequence[Order], plan: Plan,
     _show_rooms(screen, rows, farm)
     show_first_days(screen, farm, plan, clock)
     _show_short(screen, plan, rows)
+    _show_instead(screen, plan, rows)
     _show_money(screen, farm, plan, rows)
     short = sum(row.short_kg - row.unavoidable_kg for row in rows)
     screen.heading("What limits")
@@ -163,6 +164,16 @@ def _show_short(screen: Screen, plan: Plan, rows: Sequence[WeekRow]) -> None:
         screen.line(f"            {why}", "dim")
     for fall in plan.shortfalls:
         screen.line(f"{fall.day}  {fall.limit}: over by {fall.amount:,.1f} {fall.unit}", "yellow")
+
+
+def _show_instead(screen: Screen, plan: Plan, rows: Sequence[WeekRow]) -> None:
+    last = rows[-1].week.plus(1).monday
+    found = [item for item in plan.deliveries if sum(item.instead.values()) > 0.05 and item.day < last]
+    if found:
+        screen.heading("Given instead of what was ordered")
+    for item in found:
+        others = ", ".join(f"{kg:.1f} kg {code}" for code, kg in item.instead.items())
+        screen.line(f"{item.day}  {item.customer[:22]:<22} {item.strain:<6} {others}")
 
 
 def _show_money(screen: Screen, farm: Farm, plan: Plan, rows: Sequence[WeekRow]) -> None:

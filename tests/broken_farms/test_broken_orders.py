@@ -11,6 +11,8 @@ from pathlib import Path
 import pytest
 
 HEAD = "customer,strain,weekday,kg,price_per_kg,first_week,last_week,priority\n"
+FIRST = f"{HEAD}Mill Café,OYS,tue,14,11.50,2027-W07,,1\n"
+WIDE = f"{HEAD.strip()},accepts,part\nMill Café,OYS,tue,14,11.50,2027-W07,,1,"
 
 
 def _huge(path: Path) -> None:
@@ -56,6 +58,9 @@ ROWS = (
     ("priority-zero", ",2\n", ",0\n", ("row 3, priority", "at least 1")),
     ("priority-in-words", ",2\n", ",high\n", ("row 3, priority", "a whole number", "'high'")),
     ("priority-half", ",2\n", ",1.5\n", ("row 3, priority", "a whole number", "'1.5'")),
+    ("accepts-unknown", FIRST, f"{WIDE}LOI,\n", ("row 2, accepts", "'LOI'", "did you mean 'LIO'")),
+    ("accepts-itself", FIRST, f"{WIDE}LIO OYS,\n", ("row 2", "other strains than OYS")),
+    ("part-nonsense", FIRST, f"{WIDE},maybe\n", ("row 2, part", "yes or no", "'maybe'")),
     ("quote-left-open", "Lock Grocer", '"Lock Grocer', ("row 3", "quote that is not closed")),
     (
         "semicolons-wrong-numbers", None,

@@ -12,7 +12,7 @@ from datetime import date
 import pytest
 
 from models.calendar import Week
-from models.farm import Farm, StockLot
+from models.farm import Farm, Order, StockLot
 from models.plan import Plan
 from scheduler.planning import SolveLimits, plan_weeks
 from scheduler.referee import referee
@@ -188,3 +188,59 @@ def test_second_flush_is_dumped_while_bags_queue_and_kept_when_they_do_not() -> 
 
     assert kept(cheap) == {1}
     assert kept(dear) == {2}
+
+
+def planned_for(farm: Farm, book: list[Order], stock: list[StockLot] | None = None, weeks: int = 4) -> Plan:
+    plan = plan_weeks(farm, book, stock or [], START, weeks, limits=EXACT)
+    assert [violation.sentence() for violation in referee(farm, book, stock or [], plan).violations] == []
+    return plan
+
+
+def test_a_customer_takes_another_strain_instead() -> None:
+    """BBB is loaded on the same Mondays, but is not in its room: no colonisation room suits it.
+
+    12 kg of BBB are ordered at 10.00; the drum of ten gives 10 kg of AAA at nine tenths of the price.
+    """
+    farm = tiny(strain=[strain(), strain("BBB", t_min_c=24, t_opt_c=28, t_max_c=31, colonise_at_c=25)])
+    plain = planned_for(farm, [friday(12.0, code="BBB"), friday(0.5)])
+    assert sum(item.kg for item in plain.deliveries if item.strain == "BBB") == 0
+    plan = planned_for(farm, [friday(12.0, code="BBB", accepts=("AAA",)), friday(0.5)])
+    served = [item for item in plan.deliveries if item.strain == "BBB" and item.kg > 0]
+    assert [item.kg for item in served] == pytest.approx([9.5] * (len(plan.all_weeks) - 2))
+    assert all(item.instead == pytest.approx({"AAA": item.kg}) for item in served)
+    assert plan.money.sales == pytest.approx(len(served) * (9.5 * 9.0 + 0.5 * 10.0), abs=1e-4)
+
+
+def test_all_or_nothing() -> None:
+    """Ten bags a week. Of 12 kg at 10.00 no part is taken; 6 kg at 5.00 are filled, and 4 bags are not made."""
+    whole = friday(12.0, part=False)
+    plan = planned_for(tiny(), [whole, friday(6.0, price=5.0)])
+    assert all(item.kg == 0 for item in plan.deliveries if item.ordered_kg == 12)
+    assert [run.bags["AAA"] for run in plan.runs] == [6] * (len(plan.all_weeks) - 2)
+    easier = planned_for(tiny(), [friday(9.0, part=False), friday(6.0, price=5.0)])
+    weeks = len(easier.all_weeks) - 2
+    assert sorted(item.kg for item in easier.deliveries if item.kg) == pytest.approx([1.0] * weeks + [9.0] * weeks)
+
+
+def test_a_shortage_is_shared_fairly() -> None:
+    """10 kg for 12 and 8 kg wanted at one price and priority: half of it each; the dearer order comes first."""
+    alike = planned_for(tiny(), [friday(12.0), friday(8.0)])
+    last = alike.deliveries[-1].day
+    assert {item.ordered_kg: item.kg for item in alike.deliveries if item.day == last} == pytest.approx({12: 6, 8: 4})
+    other = planned_for(tiny(), [friday(12.0), friday(8.0, price=11.0)])
+    assert {item.ordered_kg: item.kg for item in other.deliveries if item.day == last} == pytest.approx({12: 2, 8: 8})
+
+
+def test_the_spot_price_falls() -> None:
+    """6 kg ordered at 10.00, 2 kg go at 5.00, 1 kg at 2.50; at 0.50 a bag costs 1.00: nine bags, not ten."""
+    market = {
+        "shortage_per_kg": 0, "spot_price_share": 0.5, "spot_kg_week": 2, "spot_more_price_share": 0.25,
+        "spot_more_kg_week": 1,
+    }  # fmt: skip
+    plan = planned_for(tiny(market=market), [friday(6.0)])
+    weeks = len(plan.all_weeks) - 2
+    assert sum(run.bags["AAA"] for run in plan.runs) == 9 * weeks
+    assert plan.money.spot == pytest.approx(weeks * (2 * 5.0 + 1 * 2.5), abs=1e-4)
+    assert sum(sale.cheap_kg for sale in plan.surplus) == pytest.approx(weeks)
+    cheaper = planned_for(tiny(market=market | {"spot_more_price_share": 0.05}), [friday(6.0)])
+    assert sum(run.bags["AAA"] for run in cheaper.runs) == 8 * weeks

@@ -155,6 +155,10 @@ MUTATIONS: list[tuple[str, Mutation, str]] = [
     ("an order day left out", without("deliveries"), "deliver"),
     ("an order day twice", twice("deliveries"), "deliver"),
     ("a shortage hidden", first("deliveries", short_kg=0.0), "deliver"),
+    ("a strain given that is not accepted", lambda plan: replace(
+        plan, deliveries=(*plan.deliveries[:-1], replace(plan.deliveries[-1], instead={"BBB": 1.0}))), "substitute"),
+    ("more at the low price than it takes", lambda plan: replace(
+        plan, surplus=(*plan.surplus, Surplus("AAA", plan.first_day + 18 * DAY, 1.0, 0.0, 1.0))), "spot"),
     ("all called unavoidable", lambda plan: replace(
         plan, deliveries=tuple(replace(d, unavoidable_kg=d.short_kg) for d in plan.deliveries)), "unavoidable"),
     ("kilograms from nowhere", lambda plan: replace(
@@ -195,6 +199,13 @@ def test_places_are_counted_to_the_bag() -> None:
                 room["places"] = 8
         verdict = referee(Farm.model_validate(card), orders(), [], plan)
         assert kind in {violation.rule for violation in verdict.violations}, code
+
+
+def test_part_of_an_order_that_takes_none_is_caught() -> None:
+    """The plan fills 9 of 12 kg; a customer who takes all or nothing gets none."""
+    picky = [order.model_copy(update={"part": False}) for order in orders()]
+    verdict = referee(farm(), picky, [], good_plan())
+    assert "part" in {violation.rule for violation in verdict.violations}
 
 
 def test_heat_of_a_room_is_held_by_the_day() -> None:
