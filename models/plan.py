@@ -159,6 +159,22 @@ class Delivery:
 
 
 @dataclass(frozen=True, slots=True)
+class Margin:
+    """What a plan keeps ready for a delivery beyond what is expected to be enough.
+
+    Attributes
+    ----------
+    share : float
+        Ripe kilograms set aside beyond each kilogram delivered [-].
+    days : int
+        How long before the delivery they are to be picked at the latest [d].
+    """
+
+    share: float = 0.0
+    days: int = 0
+
+
+@dataclass(frozen=True, slots=True)
 class Surplus:
     """Kilograms of one strain that left on one day other than by order: sold on the spot, or spoiled after picking.
 

@@ -5,6 +5,7 @@ from models.farm.farm import Farm
 from models.farm.order import Order, StockLot, StockStage
 from models.farm.room import Room, RoomKind
 from models.farm.site import Site
+from models.farm.spread import Spread
 from models.farm.steriliser import Steriliser
 from models.farm.strain import Strain
 from models.farm.substrate import Bag, Ingredient, Programme, Recipe
@@ -28,6 +29,7 @@ __all__ = [
     "RoomKind",
     "Site",
     "Skill",
+    "Spread",
     "Steriliser",
     "StockLot",
     "StockStage",

@@ -10,6 +10,7 @@ from pydantic import Field
 from models.farm.crew import Crew, Rates
 from models.farm.room import Room, RoomKind
 from models.farm.site import Site
+from models.farm.spread import Spread
 from models.farm.steriliser import Steriliser
 from models.farm.strain import Strain
 from models.farm.substrate import Bag, Programme, Recipe
@@ -59,6 +60,8 @@ class Farm(FarmModel):
     """Price of electricity by local time of day."""
     market: Market = Market()
     """What is lost when an order is short, and where surplus can go."""
+    spread: Spread = Spread()
+    """What varies together in the harvest, for the forecast."""
 
     def recipe_of(self, strain: Strain) -> Recipe:
         """Return the recipe a strain grows on."""

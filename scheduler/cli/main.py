@@ -13,6 +13,7 @@ from typing import Annotated
 import typer
 
 from scheduler.cli.check import check
+from scheduler.cli.forecast import forecast
 from scheduler.cli.heat import heat
 from scheduler.cli.new import new
 from scheduler.cli.plan import plan
@@ -55,6 +56,7 @@ app.command("check")(check)
 app.command("strains")(strains)
 app.command("heat")(heat)
 app.command("plan")(plan)
+app.command("forecast")(forecast)
 
 
 def run() -> None:

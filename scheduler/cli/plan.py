@@ -8,9 +8,12 @@ from typing import TYPE_CHECKING, Annotated
 import typer
 
 from scheduler.cli.output import console, print_document
+from scheduler.cli.planned import first_week, read_farm, search
 
 if TYPE_CHECKING:
     from models.calendar import Week
+    from scheduler.folder import FarmFolder
+    from scheduler.sure import SurePlan
 
 
 def plan(
@@ -19,56 +22,62 @@ def plan(
     first: Annotated[
         str | None, typer.Option("--from", metavar="WEEK", help="First ISO week, such as 2027-W03 [default: the next].")
     ] = None,
+    sure: Annotated[
+        float | None, typer.Option("--sure", metavar="CHANCE", help="Fill each order with this chance, such as 0.9.")
+    ] = None,
     gap: Annotated[float, typer.Option("--gap", min=0.0, max=1.0, help="Stop at this proven gap.")] = 0.005,
     seconds: Annotated[float, typer.Option("--seconds", min=0.1, help="Stop searching after so many seconds.")] = 60.0,
     as_json: Annotated[bool, typer.Option("--json", help="Print one JSON document.")] = False,
 ) -> None:
     """Plan bags, runs, rooms and hands week by week, in money and with a proven gap.
 
-    Exit code 0: done; 1: orders come short that could not all be filled, or a limit is broken; 2: bad input; 3: no
-    plan in time. Ctrl-C shows the best plan so far.
+    With --sure several plans are made, with more and more kept ready, until the forecast fills each order with that
+    chance or more bags no longer help. Exit code 0: done; 1: orders come short that could not all be filled, or a limit
+    is broken; 2: bad input; 3: no plan in time. Ctrl-C shows the best plan so far.
     """
-    from scheduler.folder import read_farm_folder
-    from scheduler.planning import SolveLimits, plan_weeks
+    from scheduler.errors import UsageError
     from scheduler.referee import referee
-    from scheduler.views.progress import ProgressLine
 
-    folder = read_farm_folder(farm)
-    for finding in folder.findings:
-        typer.echo(f"warning: {finding.sentence()}", err=True)
-    start = _week(first)
-    with ProgressLine() as line:
-        found = plan_weeks(
-            folder.farm, folder.orders, folder.stock, start, weeks,
-            limits=SolveLimits(gap=gap, seconds=seconds), progress=line.tell,
-        )  # fmt: skip
+    if sure is not None and not 0 < sure < 1:
+        raise UsageError(f"--sure: a chance above 0 and below 1, such as 0.9, was expected; found {sure:g}")
+    folder = read_farm(farm)
+    start = first_week(first)
+    safety = None
+    if sure is None:
+        found = search(folder, start, weeks, gap=gap, seconds=seconds)
+    else:
+        safety = _surely(folder, start, weeks, sure, gap=gap, seconds=seconds)
+        found = safety.plan
     verdict = referee(folder.farm, folder.orders, folder.stock, found)
     if as_json:
         from scheduler.views.plan_json import plan_document
+        from scheduler.views.sure import sure_document
 
         document = plan_document(folder.farm, folder.orders, found, verdict)
+        if safety is not None:
+            document["sure"] = sure_document(safety)
         print_document(document, indent=1)
     else:
         from scheduler.views.plan_screen import show_plan
+        from scheduler.views.sure import show_sure
 
         show_plan(console(), folder.farm, folder.orders, found, verdict)
+        if safety is not None:
+            show_sure(console(), folder.farm, safety)
     last = found.all_weeks[found.weeks].monday if found.look_ahead_weeks else None
     short = any(
         item.short_kg - item.unavoidable_kg > 0.005 and (last is None or item.day < last) for item in found.deliveries
     )
-    raise typer.Exit(1 if verdict.violations or found.shortfalls or short else 0)
+    broken = verdict.violations or found.shortfalls or short or (safety is not None and safety.unreachable)
+    raise typer.Exit(1 if broken else 0)
 
 
-def _week(text: str | None) -> Week:
-    """Read the first week, or take the one that comes next; the only place that reads the clock."""
-    from datetime import UTC, datetime
+def _surely(folder: FarmFolder, start: Week, weeks: int, sure: float, *, gap: float, seconds: float) -> SurePlan:
+    from scheduler.forecast import forecast
+    from scheduler.sure import plan_surely
 
-    from models.calendar import Week
-    from scheduler.errors import UsageError
-
-    if text is None:
-        return Week.of(datetime.now(UTC).astimezone().date()).plus(1)
-    try:
-        return Week.parse(text)
-    except ValueError as error:
-        raise UsageError(f"--from: {error}") from error
+    return plan_surely(
+        sure,
+        lambda margins: search(folder, start, weeks, gap=gap, seconds=seconds, margins=margins),
+        lambda plan: forecast(folder.farm, folder.orders, folder.stock, plan),
+    )

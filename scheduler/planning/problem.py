@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from datetime import date
 from functools import cached_property
@@ -15,6 +15,7 @@ from models.growth.colonisation import colonisation_days, days_to_ready
 from models.growth.flush import expected_flush_kg, flush_days
 from models.growth.heat import heat_curve
 from models.growth.shelf_life import selling_days
+from models.plan import Margin
 from scheduler.planning.network import Arc, RunKind, RunNetwork, run_kinds
 from scheduler.planning.opening_stock import OpeningStock, read_stock
 from scheduler.planning.shifts import Shifts
@@ -83,6 +84,11 @@ class Problem:
     cold_pool: Pool | None
     order_days: tuple[OrderDay, ...]
     stock: OpeningStock
+    margins: Mapping[tuple[str, Week], Margin]
+
+    def margin(self, strain: int, day: int) -> Margin:
+        """What is kept ready for deliveries of a strain on a day."""
+        return self.margins.get((self.strains[strain].code, self.first_week.plus(day // 7)), Margin())
 
     @property
     def days(self) -> int:
@@ -208,7 +214,12 @@ def order_days_of(farm: Farm, orders: Sequence[Order], weeks: Sequence[Week], fi
 
 
 def state_problem(
-    farm: Farm, orders: Sequence[Order], stock: Sequence[StockLot], first_week: Week, weeks: int
+    farm: Farm,
+    orders: Sequence[Order],
+    stock: Sequence[StockLot],
+    first_week: Week,
+    weeks: int,
+    margins: Mapping[tuple[str, Week], Margin] | None = None,
 ) -> Problem:
     """Put the planning problem together.
 
@@ -220,6 +231,8 @@ def state_problem(
         The plan starts on its Monday.
     weeks : int
         Weeks asked for; look-ahead weeks are added behind them.
+    margins : mapping, optional
+        What is kept ready, by strain code and week of delivery.
     """
     look_ahead = ceil(longest_life_days(farm, orders) / 7)
     days = 7 * (weeks + look_ahead)
@@ -246,4 +259,5 @@ def state_problem(
         cold_pool=Pool(cold_rooms) if cold_rooms else None,
         order_days=order_days_of(farm, orders, all_weeks, first_week.monday),
         stock=read_stock(farm, stock, shifts),
+        margins=dict(margins or {}),
     )

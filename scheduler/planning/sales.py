@@ -10,7 +10,8 @@ from collections.abc import Sequence
 
 from scheduler.planning.stock_and_flow import StockAndFlow
 
-Sold = dict[tuple[int, int], list[int]]
+Sold = dict[tuple[int, int], list[tuple[int, float]]]
+"""By strain and pick day: columns that sell of it, with the ripe kilograms that each kilogram takes [-]."""
 
 
 def add_sales(flow: StockAndFlow, unavoidable: Sequence[float]) -> None:
@@ -22,9 +23,9 @@ def add_sales(flow: StockAndFlow, unavoidable: Sequence[float]) -> None:
         _add_order_day(flow, index, lost, sold)
     _add_spot(flow, sold)
     for (strain, day), ripe in sorted(flow.ripe.items()):
-        terms = [(column, 1.0) for column in sold[strain, day]]
+        terms = sold[strain, day]
         if terms:
-            columns.picked[strain, day] = sold[strain, day]
+            columns.picked[strain, day] = [column for column, _ in terms]
             matrix.row("ripe", day, terms + [(column, -kg) for column, kg in ripe], high=0.0)
         for column, kg in ripe:
             matrix.gain[column] -= kg * spoilage
@@ -39,11 +40,12 @@ def _add_order_day(flow: StockAndFlow, index: int, lost: float, sold: Sold) -> N
     served = []
     for strain in (item.strain, *item.accepts):
         price = item.price * (1.0 if strain == item.strain else market.substitute_price_share)
-        for day in range(item.day - problem.selling_days(strain), item.day + 1):
+        margin = problem.margin(strain, item.day)
+        for day in range(item.day - problem.selling_days(strain), item.day + 1 - margin.days):
             if (strain, day) in sold:
                 column = matrix.column(gain=price + item.penalty + market.spoilage_per_kg)
                 columns.serve[index, strain, day] = column
-                sold[strain, day].append(column)
+                sold[strain, day].append((column, 1.0 + margin.share))
                 served.append((column, 1.0))
     if not served:
         return
@@ -71,7 +73,7 @@ def _add_spot(flow: StockAndFlow, sold: Sold) -> None:
             for week in range(day // 7, last // 7 + 1) if price > 0 else ():
                 spot = matrix.column(gain=price + market.spoilage_per_kg)
                 flow.columns.spot[strain, day, week, step] = spot
-                sold[strain, day].append(spot)
+                sold[strain, day].append((spot, 1.0))
                 weeks.setdefault((week, step), []).append((spot, 1.0))
     for (week, step), terms in sorted(weeks.items()):
         matrix.row("spot, cheap" if step else "spot", week * 7, terms, high=market.spot_steps[step][1])

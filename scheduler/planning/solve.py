@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import time
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 from importlib.metadata import version
 
@@ -11,7 +11,7 @@ import numpy as np
 
 from models.calendar import Week
 from models.farm import Farm, Order, StockLot
-from models.plan import Plan, SolveReport
+from models.plan import Margin, Plan, SolveReport
 from scheduler.errors import NoPlanError
 from scheduler.planning.account import account_of, hours_of, picked_openings, shortfalls_of
 from scheduler.planning.bold import bold_plan
@@ -340,6 +340,7 @@ def plan_weeks(
     *,
     limits: SolveLimits | None = None,
     progress: Progress | None = None,
+    margins: Mapping[tuple[str, Week], Margin] | None = None,
 ) -> Plan:
     """Plan the weekly bag production of a farm.
 
@@ -355,6 +356,8 @@ def plan_weeks(
         When to stop.
     progress : callable, optional
         Called with the stage and, where known, best money, bound and gap.
+    margins : mapping, optional
+        What is kept ready, by strain code and week of delivery; see `scheduler.sure`.
 
     Returns
     -------
@@ -367,5 +370,5 @@ def plan_weeks(
         The search was interrupted, or ran out of time, before a first plan.
     """
     limits = limits or SolveLimits()
-    problem = state_problem(farm, orders, stock, first_week, weeks)
+    problem = state_problem(farm, orders, stock, first_week, weeks, margins)
     return Planner(problem, limits, progress).run()

@@ -1,4 +1,4 @@
-"""The earliest day on which a bag that is not yet made could be inoculated."""
+"""The earliest days on which a bag that is not yet made could be inoculated, and picked."""
 
 from __future__ import annotations
 
@@ -6,6 +6,7 @@ from datetime import date, timedelta
 from math import ceil
 
 from models.farm import Farm, Programme, Steriliser, Strain
+from models.growth.colonisation import days_to_ready
 from models.thermal.errors import ThermalError
 from models.thermal.table import cycle_row
 from scheduler.referee.case import Case
@@ -68,3 +69,21 @@ def _unloaded(case: Case, ready: int, bags: int) -> int:
         if ends:
             return min(ends)
     return ready
+
+
+def first_ripe(case: Case, strain: Strain) -> date:
+    """A day before which no new bag can be ripe: the earliest run there can be, in the quickest room."""
+    rooms = [r for r in case.farm.rooms_of("colonisation") if strain.grows_in(r.temp_c)]
+    inoculated = earliest_inoculation(case, strain)
+    if not rooms or inoculated is None:
+        return case.last + timedelta(days=1)
+    quickest = min(days_to_ready(strain, room.temp_c) for room in rooms)
+    opened = case.next_working(inoculated + timedelta(days=quickest), "open")
+    return case.next_working(opened + quickest_flushes(case, strain)[0], "pick")
+
+
+def quickest_flushes(case: Case, strain: Strain) -> list[timedelta]:
+    """Least time from opening to each flush in any fruiting room that suits a strain."""
+    return [
+        min(days) for days in zip(*(case.after_opening(strain, r) for r in case.fruiting_rooms(strain)), strict=True)
+    ]

@@ -13,7 +13,7 @@ from models.growth.shelf_life import selling_days
 from models.plan import Delivery
 from scheduler.referee.bags import stock_flush_days
 from scheduler.referee.case import Case
-from scheduler.referee.earliest import earliest_inoculation
+from scheduler.referee.earliest import first_ripe, quickest_flushes
 
 
 def check_sales(case: Case) -> None:
@@ -109,13 +109,13 @@ def _unavoidable(case: Case) -> None:
         items = [item for item in case.plan.deliveries if item.strain == strain.code]
         if not any(item.unavoidable_kg > 1e-9 for item in items):
             continue
-        first = _first_ripe(case, strain)
+        first = first_ripe(case, strain)
         supply = _stock_supply(case, strain)
         lost = 0.0
         for item in sorted(items, key=lambda i: (i.day, i.order)):
             where = f"{strain.code} by {item.day}"
             others = [case.farm.strain_called(code) for code in case.orders[item.order].accepts]
-            if item.day >= min([first, *(_first_ripe(case, other) for other in others)]):
+            if item.day >= min([first, *(first_ripe(case, other) for other in others)]):
                 case.at_most("unavoidable", where, item.unavoidable_kg, 0.0, "kg")
                 continue
             ripe = sum(kg for other in others for day, kg in _stock_supply(case, other) if day <= item.day)
@@ -137,17 +137,6 @@ def _peak(case: Case, items: Sequence[Delivery], supply: Sequence[tuple[date, fl
         given += served
         short += item.ordered_kg - served
     return short
-
-
-def _first_ripe(case: Case, strain: Strain) -> date:
-    """A day before which no new bag can be ripe: the earliest run there can be, in the quickest room."""
-    rooms = [r for r in case.farm.rooms_of("colonisation") if strain.grows_in(r.temp_c)]
-    inoculated = earliest_inoculation(case, strain)
-    if not rooms or inoculated is None:
-        return case.last + timedelta(days=1)
-    quickest = min(days_to_ready(strain, room.temp_c) for room in rooms)
-    opened = case.next_working(inoculated + timedelta(days=quickest), "open")
-    return case.next_working(opened + _quickest(case, strain)[0], "pick")
 
 
 def _stock_supply(case: Case, strain: Strain) -> list[tuple[date, float]]:
@@ -173,12 +162,7 @@ def _stock_supply(case: Case, strain: Strain) -> list[tuple[date, float]]:
             if row.stage == "cooled":
                 ready = case.first + timedelta(days=span)
             start = case.next_working(ready, "open")
-        found += [(start + after, row.bags * share) for after, share in zip(_quickest(case, strain), kg, strict=True)]
+        found += [
+            (start + after, row.bags * share) for after, share in zip(quickest_flushes(case, strain), kg, strict=True)
+        ]
     return found
-
-
-def _quickest(case: Case, strain: Strain) -> list[timedelta]:
-    """Least time from opening to each flush in any fruiting room that suits a strain."""
-    return [
-        min(days) for days in zip(*(case.after_opening(strain, r) for r in case.fruiting_rooms(strain)), strict=True)
-    ]

@@ -20,6 +20,7 @@ from models.farm import (
     Recipe,
     Room,
     Site,
+    Spread,
     Steriliser,
     StockLot,
     Strain,
@@ -35,7 +36,7 @@ SECTIONS = {
     "[site]": Site, "[[recipe]]": Recipe, "[[recipe.ingredient]]": Ingredient, "[[bag]]": Bag,
     "[[programme]]": Programme, "[[steriliser]]": Steriliser,
     "[[room]]": Room, "[[strain]]": Strain, "[[crew]]": Crew, "[rates]": Rates, "[limits]": Limits,
-    "[tariff]": Tariff, "[[tariff.periods]]": TariffPeriod, "[market]": Market, "orders.csv": Order,
+    "[tariff]": Tariff, "[[tariff.periods]]": TariffPeriod, "[market]": Market, "[spread]": Spread, "orders.csv": Order,
     "stock.csv": StockLot,
 }  # fmt: skip
 
