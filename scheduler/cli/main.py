@@ -15,6 +15,7 @@ import typer
 from scheduler.cli.check import check
 from scheduler.cli.forecast import forecast
 from scheduler.cli.heat import heat
+from scheduler.cli.learn import learn
 from scheduler.cli.new import new
 from scheduler.cli.plan import plan
 from scheduler.cli.strains import strains
@@ -57,6 +58,7 @@ app.command("strains")(strains)
 app.command("heat")(heat)
 app.command("plan")(plan)
 app.command("forecast")(forecast)
+app.command("learn")(learn)
 
 
 def run() -> None:

@@ -47,7 +47,11 @@ def set_values(path: Path, values: Mapping[Place, Any]) -> None:
             raise InputError(
                 (Finding(path.name, f"{section}.{code}", "no such table", f"a [[{section}]] of that code"),)
             )
-        tables[0][key] = value
+        fresh = tomlkit.item(value)
+        if key in tables[0]:
+            fresh.trivia.comment_ws = tables[0].item(key).trivia.comment_ws
+            fresh.trivia.comment = tables[0].item(key).trivia.comment
+        tables[0][key] = fresh
     _replace(path, tomlkit.dumps(document))
 
 
