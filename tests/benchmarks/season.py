@@ -160,7 +160,7 @@ class _Season:
                     given,
                     short,
                     min(lost, short),
-                )  # fmt: skip
+                )
             )
         surplus = []
         left: dict[int, float] = defaultdict(lambda: self.farm.market.spot_kg_week)
