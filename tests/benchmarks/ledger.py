@@ -12,7 +12,7 @@ from math import ceil, floor
 
 import numpy as np
 
-from models.farm import Room, Strain
+from models.farm import SKILLS, Room, Strain
 from models.growth.colonisation import colonisation_days
 from models.growth.heat import heat_curve
 from scheduler.planning.network import Arc
@@ -43,6 +43,11 @@ class Ledger:
         self.booked: dict[tuple[str, int], dict[str, float]] = defaultdict(lambda: defaultdict(float))
         self._hours: dict[tuple[str, int], float] = {}
         self._bench: dict[int, float] = {}
+        able = {skill: [crew for crew in farm.crew if skill in crew.skills] for skill in SKILLS}
+        self._able = {
+            skill: [crew.code for crew in sorted(crews, key=lambda crew: len(crew.skills))]
+            for skill, crews in able.items()
+        }
         self._power: dict[int, float] = defaultdict(float)
         for crew in farm.crew:
             for day in range(self.days):
@@ -110,6 +115,13 @@ class Ledger:
         hours = sum(self._hours.get((crew, day), 0.0) for crew in self._crews(skill))
         return max(0.0, min(hours, self._bench.get(day, hours)) if skill == "inoculate" else hours)
 
+    def hands(self, needs: Sequence[Need], bags: int) -> int:
+        """At most how many bags the hours left allow, for the needs of one; shared crews may allow fewer."""
+        for skill, day, hours in needs:
+            if day < self.days and bags:
+                bags = min(bags, floor(self.hours_left(skill, day) / hours + DUST))
+        return bags
+
     def work(self, needs: Sequence[Need], *, force: bool = False) -> bool:
         """Book hours, all of them or (False) none; ``force`` books them even where nobody has them."""
         done: list[tuple[str, str, int, float]] = []
@@ -139,8 +151,7 @@ class Ledger:
 
     def _crews(self, skill: str) -> list[str]:
         """Crews with a skill, those with the fewest skills first."""
-        able = [crew for crew in self.problem.farm.crew if skill in crew.skills]
-        return [crew.code for crew in sorted(able, key=lambda crew: len(crew.skills))]
+        return self._able[skill]
 
     # --- power ------------------------------------------------------------------------------------------------------
 

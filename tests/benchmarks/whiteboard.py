@@ -13,6 +13,7 @@ could avoid. No decision and no sum of the planner is used.
 
 from __future__ import annotations
 
+from bisect import bisect_right
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 from math import ceil
@@ -27,7 +28,8 @@ from scheduler.planning.problem import Problem, state_problem
 from tests.benchmarks.ledger import COOLING, Ledger, Need
 from tests.benchmarks.season import Entry, Exit, Load, season_plan
 
-URGENT_DAYS = 2
+MARGIN_DAYS = 1
+"""Days before their last chance at which bags are steamed even if they do not fill a load."""
 LEAST_FILL = 1 / 3
 
 
@@ -68,6 +70,7 @@ class Whiteboard:
     def __post_init__(self) -> None:
         self.farm = self.problem.farm
         self.ledger = Ledger(self.problem)
+        self._chances = self._first_inoculations()
         self.leads = {k: self._lead(card) for k, card in enumerate(self.farm.strain)}
 
     def _lead(self, card: Strain) -> Lead:
@@ -87,6 +90,20 @@ class Whiteboard:
             days[:kept],
             kg[:kept],
         )
+
+    def _first_inoculations(self) -> dict[int, list[tuple[int, int]]]:
+        """By kind of run: load days, and the earliest day on which what is loaded then can be inoculated."""
+        first: dict[int, dict[int, int]] = {}
+        for arc in self.problem.arcs:
+            days = first.setdefault(arc.kind, {})
+            days[arc.load_day] = min(arc.first_inoculation, days.get(arc.load_day, arc.first_inoculation))
+        return {kind: sorted(days.items()) for kind, days in first.items()}
+
+    def _next_chance(self, arc: Arc) -> int:
+        """Earliest day on which bags loaded on the next load day of a kind can be inoculated."""
+        days = self._chances[arc.kind]
+        step = bisect_right(days, (arc.load_day, self.problem.days))
+        return days[step][1] if step < len(days) else self.problem.days
 
     def draw_up(self) -> Plan:
         """Book the opening stock, fill the runs, and write the season out as a plan."""
@@ -146,6 +163,7 @@ class Whiteboard:
         leave = self._leave(lead, day)
         for room in lead.fruiting:
             part = min(bags - opened, self.ledger.places(room.code, day, leave + room.clean_days))
+            part = self.ledger.hands(self._opening_hours(day, leave, 1), part)
             while part > 0 and not self.ledger.work(self._opening_hours(day, leave, part)):
                 part = part * 3 // 4
             if part > 0:
@@ -214,7 +232,7 @@ class Whiteboard:
                 and item.last >= full.first_inoculation
             ]
             waiting = sum(item.bags for item in due)
-            pressing = any(item.last - full.first_inoculation < URGENT_DAYS for item in due)
+            pressing = any(item.last < self._next_chance(full) + MARGIN_DAYS for item in due)
             if waiting < LEAST_FILL * own[0].bags or not (pressing or waiting >= full.bags):
                 continue
             arc = next((arc for arc in own if arc.bags >= waiting), full)
@@ -272,6 +290,7 @@ class Whiteboard:
                 )
                 if isinstance(lot, Load):
                     part = min(part, ledger.places(COOLING, since, day + 1))
+                part = ledger.hands(self._hours(lead_in, day, opened, leave, 1), part)
                 while part > 0 and not ledger.work(self._hours(lead_in, day, opened, leave, part)):
                     part = part * 3 // 4
                 if part <= 0:
