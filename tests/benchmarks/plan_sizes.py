@@ -73,12 +73,13 @@ def _lines(money: Account) -> dict[str, float]:
     return {line: getattr(money, line) for line in MONEY_LINES} | {"total": money.total}
 
 
-def in_a_child(size: str, seconds: float, *, peers: bool) -> dict[str, Any]:
-    """`measure` in a process of its own."""
+def in_a_child(size: str, seconds: float, *, peers: bool) -> dict[str, Any] | None:
+    """`measure` in a process of its own; None, with the reason printed, where it came to nothing."""
     command = [sys.executable, "-m", "tests.benchmarks.plan_sizes", "--one", size, "--seconds", str(seconds)]
     done = subprocess.run([*command, *(["--peers"] if peers else [])], capture_output=True, text=True, check=False)
     if done.returncode:
-        raise SystemExit(f"{size}: {done.stderr.strip()[-2000:]}")
+        print(f"{size}: no plan: {done.stderr.strip().splitlines()[-1:]}", flush=True)
+        return None
     return json.loads(done.stdout)
 
 
@@ -132,8 +133,10 @@ def main() -> None:
     print("".join(f"{name:>{width}}" for name, width in HEAD))
     table = []
     for size in asked.sizes.split(","):
-        table.append(in_a_child(size, asked.seconds, peers=asked.peers))
-        print(row_of(table[-1]), flush=True)
+        found = in_a_child(size, asked.seconds, peers=asked.peers)
+        if found is not None:
+            table.append(found)
+            print(row_of(found), flush=True)
     for found in table if asked.peers else ():
         print_peers(found)
     growth(table)
