@@ -11,7 +11,7 @@ import numpy as np
 from models.farm import Farm, Limits, Programme, Room, Site, Steriliser
 from models.thermal.curve import CurveRow, by_minute, joined, steamed_rows
 from models.thermal.errors import ThermalError
-from models.thermal.finish import CoolingPlace, finish
+from models.thermal.finish import CoolingPlace, Finish, finish
 from models.thermal.generator import boil_up_seconds, steam_share
 from models.thermal.lethality import ORGANISMS, equivalent_minutes, log_reduction
 from models.thermal.load import LoadPart, bag_states
@@ -129,6 +129,55 @@ def cycle_in(
 ) -> Cycle:
     """`steam_cycle` with the farm reduced to what matters."""
     setting = setting_of(around, steriliser, programme, month=month, element_kw=element_kw, start_c=start_c)
+    steamed = steam_load(setting, steriliser, programme, load)
+    vessel, trace, after = setting.vessel, steamed.trace, steamed.finish
+    ready = steamed.heat_up_h + programme.hold_h + steriliser.vent_min / 60 + after.in_place_h
+    curve = joined(steamed_rows(setting.boil_up_min, vessel.element_kw, setting.start_c, trace), after.rows)
+    cores = [row.core_c for row in by_minute(curve)]
+    condensate = trace.delivered_kj / latent_heat(vessel.boil_c)
+    return Cycle(
+        boiling_c=vessel.boil_c,
+        boil_up_h=setting.boil_up_min / 60,
+        heat_up_h=steamed.heat_up_h,
+        hold_h=programme.hold_h,
+        vent_h=steriliser.vent_min / 60,
+        cool_in_place_h=after.in_place_h,
+        cool_down_h=after.in_room_h,
+        ready_to_unload_h=ready,
+        ready_to_inoculate_h=ready + after.in_room_h,
+        energy_kwh=steamed.energy_kwh,
+        heat_into_load_mj=steamed.load_heat_kj / 1000,
+        condensate_kg=condensate,
+        water_kg=0.0 if steriliser.condensate_return else condensate,
+        mean_hold_kw=steamed.mean_hold_kw,
+        hold_duty=steamed.mean_hold_kw / vessel.element_kw,
+        log_reduction={organism.name: log_reduction(cores, 1.0, organism) for organism in ORGANISMS},
+        equivalent_min={name: equivalent_minutes(cores, 1.0, at) for name, at in REFERENCES_C.items()},
+        curve=curve,
+        balance_error_pct=steamed.balance_error_pct,
+        cautions=_cautions(around, vessel.boil_c, steamed.heat_up_h, vessel.element_kw),
+    )
+
+
+@dataclass(frozen=True)
+class Steamed:
+    """A load from steam on to the end of its hold, and how it cools: hours, heat [kJ], energy [kWh], power [kW].
+
+    ``end_min`` is the end of the hold, from steam on [min].
+    """
+
+    trace: Trace
+    heat_up_h: float
+    end_min: float
+    load_heat_kj: float
+    energy_kwh: float
+    mean_hold_kw: float
+    balance_error_pct: float
+    finish: Finish
+
+
+def steam_load(setting: Setting, steriliser: Steriliser, programme: Programme, load: Sequence[LoadPart]) -> Steamed:
+    """Steam a load and let it cool; see `steam_cycle` for refusals."""
     states, trace, vessel = bag_states(load, steriliser), Trace(), setting.vessel
     steaming_min = heat_up(vessel, states, programme.target_core_c, setting.start_c, trace)
     hold_from = len(trace.minutes)
@@ -141,36 +190,19 @@ def cycle_in(
     hold_powers = powers[hold_from:] if len(powers) > hold_from else powers[-1:]
     balance = _balance_error(trace, states, vessel, setting.start_c, vessel_c)
     load_heat = sum(state.capacity_kj_k * (state.mean_c(vessel_c) - setting.start_c) for state in states)
-    heat_up_h = setting.boil_up_min / 60 + steaming_min / 60
     after = finish(
         steriliser, load, states, vessel_c, setting.open_c, vessel.ambient_c, setting.place,
         setting.boil_up_min + end_min,
     )  # fmt: skip
-    ready = heat_up_h + programme.hold_h + steriliser.vent_min / 60 + after.in_place_h
-    curve = joined(steamed_rows(setting.boil_up_min, vessel.element_kw, setting.start_c, trace), after.rows)
-    cores = [row.core_c for row in by_minute(curve)]
-    condensate = trace.delivered_kj / latent_heat(vessel.boil_c)
-    return Cycle(
-        boiling_c=vessel.boil_c,
-        boil_up_h=setting.boil_up_min / 60,
-        heat_up_h=heat_up_h,
-        hold_h=programme.hold_h,
-        vent_h=steriliser.vent_min / 60,
-        cool_in_place_h=after.in_place_h,
-        cool_down_h=after.in_room_h,
-        ready_to_unload_h=ready,
-        ready_to_inoculate_h=ready + after.in_room_h,
-        energy_kwh=vessel.element_kw * setting.boil_up_min / 60 + float(powers @ weights) / 60,
-        heat_into_load_mj=load_heat / 1000,
-        condensate_kg=condensate,
-        water_kg=0.0 if steriliser.condensate_return else condensate,
+    return Steamed(
+        trace=trace,
+        heat_up_h=(setting.boil_up_min + steaming_min) / 60,
+        end_min=setting.boil_up_min + end_min,
+        load_heat_kj=load_heat,
+        energy_kwh=(vessel.element_kw * setting.boil_up_min + float(powers @ weights)) / 60,
         mean_hold_kw=float(hold_powers.mean()),
-        hold_duty=float(hold_powers.mean()) / vessel.element_kw,
-        log_reduction={organism.name: log_reduction(cores, 1.0, organism) for organism in ORGANISMS},
-        equivalent_min={name: equivalent_minutes(cores, 1.0, at) for name, at in REFERENCES_C.items()},
-        curve=curve,
         balance_error_pct=balance,
-        cautions=_cautions(around, vessel.boil_c, heat_up_h, vessel.element_kw),
+        finish=after,
     )
 
 

@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import lru_cache
 from math import ceil
 
 from models.farm import Bag, Farm, Programme, Recipe, Steriliser
-from models.thermal.cycle import Cycle, Surroundings, cycle_in
+from models.thermal.curve import CurveRow, steamed_rows
+from models.thermal.cycle import Cycle, Surroundings, setting_of, steam_load
 from models.thermal.load import LoadPart
 
 QUARTER_MIN = 15
@@ -62,7 +63,11 @@ def cycle_row(
         No such cycle exists; see `models.thermal.cycle.steam_cycle`.
     """
     around = Surroundings.of(farm)
-    rows = [_row(around, steriliser, programme, recipe, bag, load, month) for recipe, bag in families]
+    # Months as warm as an earlier one have its cycle.
+    alike = next(m for m in range(1, 13) if farm.site.ambient_in(m) == farm.site.ambient_in(month))
+    rows = [
+        replace(_row(around, steriliser, programme, recipe, bag, load, alike), month=month) for recipe, bag in families
+    ]
     if len(rows) == 1:
         return rows[0]
     hungriest = max(rows, key=lambda row: row.energy_kwh)
@@ -92,17 +97,20 @@ def _row(
     month: int,
 ) -> CycleRow:
     bags = steriliser.bags_at(load)
-    cycle = cycle_in(around, steriliser, programme, (LoadPart(recipe, bag, bags),), month=month)
-    kwh, kw = power_by_quarter(cycle)
+    setting = setting_of(around, steriliser, programme, month=month)
+    steamed = steam_load(setting, steriliser, programme, (LoadPart(recipe, bag, bags),))
+    rows = steamed_rows(setting.boil_up_min, setting.vessel.element_kw, setting.start_c, steamed.trace)
+    kwh, kw = _by_quarter(rows, steamed.end_min, steamed.energy_kwh)
+    ready_h = steamed.end_min / 60 + steriliser.vent_min / 60 + steamed.finish.in_place_h
     return CycleRow(
         steriliser=steriliser.code,
         programme=programme.code,
         load=load,
         bags=bags,
         month=month,
-        heat_up_min=ceil(60 * cycle.heat_up_h - 1e-6),
-        ready_to_unload_min=ceil(60 * cycle.ready_to_unload_h - 1e-6),
-        cool_down_min=ceil(60 * cycle.cool_down_h - 1e-6),
+        heat_up_min=ceil(60 * steamed.heat_up_h - 1e-6),
+        ready_to_unload_min=ceil(60 * ready_h - 1e-6),
+        cool_down_min=ceil(60 * steamed.finish.in_room_h - 1e-6),
         kwh_by_quarter=kwh,
         kw_by_quarter=kw,
         energy_kwh=sum(kwh),
@@ -114,12 +122,18 @@ def power_by_quarter(cycle: Cycle) -> tuple[tuple[float, ...], tuple[float, ...]
 
     The energy is scaled to the cycle's, whose last minute counts in part.
     """
-    count = ceil((cycle.heat_up_h + cycle.hold_h) * 60 / QUARTER_MIN - 1e-9)
+    return _by_quarter(cycle.curve, 60 * (cycle.heat_up_h + cycle.hold_h), cycle.energy_kwh)
+
+
+def _by_quarter(
+    rows: Sequence[CurveRow], end_min: float, energy_kwh: float
+) -> tuple[tuple[float, ...], tuple[float, ...]]:
+    count = ceil(end_min / QUARTER_MIN - 1e-9)
     kwh, kw = [0.0] * count, [0.0] * count
-    for row in cycle.curve:
+    for row in rows:
         quarter = int(max(0.0, row.minutes - 0.5) // QUARTER_MIN)
         if quarter < count:
             kwh[quarter] += row.element_kw / 60
             kw[quarter] = max(kw[quarter], row.element_kw)
-    scale = cycle.energy_kwh / sum(kwh) if sum(kwh) > 0 else 0.0
+    scale = energy_kwh / sum(kwh) if sum(kwh) > 0 else 0.0
     return tuple(scale * value for value in kwh), tuple(kw)
