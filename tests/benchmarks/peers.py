@@ -113,7 +113,11 @@ def cp_sat_peer(rows: Rows, seconds: float) -> PeerAnswer:
     )
     parameters.cp_sat.mip_var_scaling = PARTS
     started = time.perf_counter()
-    result = mathopt.solve(model, mathopt.SolverType.CP_SAT, params=parameters)
+    try:
+        result = mathopt.solve(model, mathopt.SolverType.CP_SAT, params=parameters)
+    except Exception as error:  # noqa: BLE001  (MathOpt tells a refused model by an error of its own)
+        reason = str(error.__context__ or error).partition("\n")[0]
+        return rows.answer("CP-SAT", None, inf, time.perf_counter() - started, f"refused: {reason}")
     took = time.perf_counter() - started
     bound = result.termination.objective_bounds.dual_bound
     stop = result.termination.reason.name.lower()
