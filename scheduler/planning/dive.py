@@ -10,7 +10,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from math import ceil, floor
 
-from scheduler.planning.engine import Answer, FloatArray, Relaxation
+from scheduler.planning.engine import Answer, Dead, FloatArray, Relaxation
 
 WHOLE_TOLERANCE = 1e-6
 
@@ -28,6 +28,9 @@ class Candidate:
 class Style:
     """How boldly to dive: days in a window, and whether a window is decided as a whole.
 
+    A ``bold`` style decides all windows of a lane at once, and in each half of what it may round up; others decide
+    every second window.
+
     ``sparse`` columns are few large decisions (runs): where the fractions of a window together make half a unit, the
     largest is rounded up, else all of them down. Others (bags) are rounded to the nearest whole number, earliest
     first.
@@ -35,10 +38,7 @@ class Style:
 
     window_days: int
     sparse: bool
-
-
-class Dead(Exception):  # noqa: N818  (not an error of the user's: the dive found no whole values)
-    """A dive ran into bounds that nothing satisfies."""
+    bold: bool = False
 
 
 def fraction(value: float) -> float:
@@ -76,7 +76,7 @@ def dive(
 
 
 def _batch(values: FloatArray, candidates: Sequence[Candidate], style: Style) -> dict[int, float]:
-    """New values for columns in every second window of each lane that has fractions."""
+    """New values for columns in the windows of each lane that have fractions."""
     windows: dict[int, dict[int, list[Candidate]]] = {}
     for item in candidates:
         windows.setdefault(item.lane, {}).setdefault(item.day // style.window_days, []).append(item)
@@ -85,7 +85,7 @@ def _batch(values: FloatArray, candidates: Sequence[Candidate], style: Style) ->
         previous = -2
         for window in sorted(lane):
             members = lane[window]
-            if window > previous + 1 and any(fraction(values[item.column]) for item in members):
+            if (style.bold or window > previous + 1) and any(fraction(values[item.column]) for item in members):
                 previous = window
                 batch.update(_decide(values, members, style))
     return batch
@@ -96,10 +96,12 @@ def _decide(values: FloatArray, members: Sequence[Candidate], style: Style) -> d
     if not style.sparse:
         first = min(broken, key=lambda c: (c.day, c.column)).column
         return {first: float(floor(values[first] + 0.5))}
-    if sum(fraction(values[item.column]) for item in broken) < 0.5:
+    together = sum(fraction(values[item.column]) for item in broken)
+    if together < 0.5:
         return {item.column: float(floor(values[item.column] + WHOLE_TOLERANCE)) for item in members}
-    largest = max(broken, key=lambda c: (fraction(values[c.column]), -c.column)).column
-    return {largest: float(ceil(values[largest]))}
+    count = max(1, floor(together / 2)) if style.bold else 1
+    largest = sorted(broken, key=lambda c: (-fraction(values[c.column]), c.column))[:count]
+    return {item.column: float(ceil(values[item.column])) for item in largest}
 
 
 def _step(

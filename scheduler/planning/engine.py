@@ -9,6 +9,7 @@ from __future__ import annotations
 import datetime as dt
 import re
 import threading
+import time
 from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass
 from math import inf, nan
@@ -46,7 +47,15 @@ class Answer:
         return self.values
 
 
-LARGE_COLUMNS = 22_000
+LARGE_COLUMNS = 40_000
+
+
+class Dead(Exception):  # noqa: N818  (not an error of the user's: a search found no whole values)
+    """A search ran into bounds that nothing satisfies."""
+
+
+class Late(Dead):
+    """The time is over, and there is a plan already."""
 
 
 class Relaxation:
@@ -69,6 +78,7 @@ class Relaxation:
             self._parameters.glop.use_preprocessing = False
             self._solver = mathopt.IncrementalSolver(self._model, mathopt.SolverType.GLOP)
         self.solves = 0
+        self.deadline = inf
 
     def bound(self, column: int, low: float, high: float) -> None:
         """Set the bounds of a column."""
@@ -86,7 +96,15 @@ class Relaxation:
             self._model.objective.set_linear_coefficient(self._columns[column], gain)
 
     def solve(self) -> Answer:
-        """Solve to the optimum within the bounds as they are now."""
+        """Solve to the optimum within the bounds as they are now.
+
+        Raises
+        ------
+        Late
+            ``deadline``, a moment of `time.perf_counter`, has passed.
+        """
+        if time.perf_counter() > self.deadline:
+            raise Late
         self.solves += 1
         result = _in_thread(self._solve)
         if result.termination.reason != mathopt.TerminationReason.OPTIMAL:
@@ -95,9 +113,14 @@ class Relaxation:
         return Answer(values, result.objective_value(), result.objective_value(), "optimal")
 
     def _solve(self) -> Any:
-        if self.large:
+        if not self.large:
+            return self._solver.solve(params=self._parameters)
+        try:
             return mathopt.solve(self._model, mathopt.SolverType.HIGHS, params=self._parameters)
-        return self._solver.solve(params=self._parameters)
+        except (AttributeError, RuntimeError, ValueError):
+            # The interior-point method has given up on its accuracy; the simplex method takes longer and does not.
+            simplex = mathopt.SolveParameters(random_seed=SEED, lp_algorithm=mathopt.LPAlgorithm.DUAL_SIMPLEX)
+            return mathopt.solve(self._model, mathopt.SolverType.GLOP, params=simplex)
 
 
 def branch(

@@ -10,6 +10,7 @@ from scheduler.planning.problem import Pool
 from scheduler.planning.stock_and_flow import Reserve, StockAndFlow
 
 TOLERANCE = 1e-6
+MOST_AT_ONCE = 3
 Key = tuple[str, int]
 """Name of the limit, and half-hour slot or day."""
 
@@ -40,6 +41,13 @@ class SeldomRows:
             for slot, kw in half_hour_draw(arc):
                 self._terms.setdefault(("supply", slot), []).append((self.flow.columns.run[k], kw))
                 self._left["supply", slot] = spare
+                # Of runs that draw more than a share 1 / (k + 1) of what is left, k are on at once at most. For whole
+                # runs the row above says as much; for parts of runs it does not.
+                for at_once in range(1, MOST_AT_ONCE + 1):
+                    if kw > spare / (at_once + 1) + TOLERANCE:
+                        key = (f"supply, {at_once} at once", slot)
+                        self._terms.setdefault(key, []).append((self.flow.columns.run[k], 1.0))
+                        self._left[key] = float(at_once)
 
     def _heat(self, index: int, pool: Pool, cooling_w: float) -> None:
         """Heat of bags inoculated into a pool [W a bag], after what the opening stock gives off there."""
@@ -70,7 +78,7 @@ class SeldomRows:
             self._rows.add((name, place))
             terms, left = self._terms[name, place], self._left[name, place]
             row = self.flow.matrix.row(name, place, terms, high=left)
-            if name != "supply":
+            if not name.startswith("supply"):
                 self.flow.reserves.append(Reserve(row, left, max(watts for _, watts in terms)))
 
 

@@ -16,8 +16,8 @@ from scheduler.errors import NoPlanError
 from scheduler.planning.account import account_of, hours_of, picked_openings, shortfalls_of
 from scheduler.planning.bold import bold_plan
 from scheduler.planning.build import build_model
-from scheduler.planning.dive import Dead, Style, dive
-from scheduler.planning.engine import SEED, Answer, FloatArray, Relaxation, branch
+from scheduler.planning.dive import Style, dive
+from scheduler.planning.engine import SEED, Answer, Dead, FloatArray, Relaxation, branch
 from scheduler.planning.lots import Made, make_lots
 from scheduler.planning.problem import Problem, state_problem
 from scheduler.planning.rooms import House
@@ -26,7 +26,11 @@ from scheduler.planning.sold import deliveries_of, surplus_of
 from scheduler.planning.whole import bounds_of, fix, open_bags, run_candidates, whole_bags
 
 Progress = Callable[[str, float | None, float | None, float | None], None]
-RUN_WINDOWS = (10, 3, 5, 7, 14)
+STYLES = (
+    Style(10, sparse=True, bold=True), Style(10, sparse=True), Style(3, sparse=True), Style(5, sparse=True),
+    Style(7, sparse=True), Style(14, sparse=True),
+)  # fmt: skip
+"""How small and middling farms are dived, one after the other, until the gap is met."""
 RESERVES = (1.0, 2.0, 4.0)
 WAIT_COST = 2e-3
 """Slight price of a cooled bag that waits another day: of plans that earn the same, the sooner one is chosen."""
@@ -107,9 +111,9 @@ class Planner:
 
     def _try_styles(self, search: _Search, relaxation: Relaxation, base: Answer) -> None:
         """Small farms: dive in one style after the other until the gap is met."""
-        for number, window in enumerate(RUN_WINDOWS):
+        for number, style in enumerate(STYLES):
             for _ in range(ROW_ROUNDS):
-                broken = self._dive(search, self._fresh(relaxation), base, window)
+                broken = self._dive(search, self._fresh(relaxation), base, style)
                 if not broken or (self._time_left() <= 0 and search.plan is not None):
                     break
                 self.seldom.add(broken)
@@ -166,18 +170,19 @@ class Planner:
         relaxation.prefer(self.flow.columns.cooled.values(), -WAIT_COST)
         return relaxation
 
-    def _dive(self, search: _Search, relaxation: Relaxation, base: Answer, window: int) -> list[Key]:
+    def _dive(self, search: _Search, relaxation: Relaxation, base: Answer, style: Style) -> list[Key]:
         """Dive to whole runs and bags; the limits without a row that it breaks, if it does."""
         low, high = bounds_of(self.flow.matrix)
+        if search.plan is not None:
+            relaxation.deadline = self.started + self.limits.seconds
         try:
             self._tell("choosing runs", search)
-            style = Style(window_days=window, sparse=True)
             answer = dive(relaxation, base, run_candidates(self.flow), style, low, high)
             broken = self.seldom.broken(answer.known)
             if broken:
                 return broken
             self._tell("making bags whole", search)
-            answer, made = whole_bags(self.flow, relaxation, answer, low, high)
+            answer, made = whole_bags(self.flow, relaxation, answer, low, high, bold=style.bold)
         except Dead:
             return []
         broken = self.seldom.broken(answer.known)

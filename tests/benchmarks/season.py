@@ -164,8 +164,8 @@ class _Season:
             )
         surplus = []
         left: dict[int, float] = defaultdict(lambda: self.farm.market.spot_kg_week)
-        for strain, day in sorted(ripe, key=lambda key: (key[1], -problem.spot_price(key[0]), key[0])):
-            if problem.spot_price(strain) > 0:
+        for strain, day in sorted(ripe, key=lambda key: (key[1], -_spot_price(problem, key[0]), key[0])):
+            if _spot_price(problem, strain) > 0:
                 kg = pick(strain, day, left[day // 7])
                 left[day // 7] -= kg
                 if kg:
@@ -322,7 +322,7 @@ def _account(
     farm, orders = problem.farm, problem.orders
     cards = {card.code: card for card in farm.strain}
     strain_of = {lot.code: cards[lot.strain] for lot in lots}
-    spot = {card.code: problem.spot_price(k) for k, card in enumerate(farm.strain)}
+    spot = {card.code: _spot_price(problem, k) for k, card in enumerate(farm.strain)}
     wage = {crew.code: crew.cost_per_h for crew in farm.crew}
 
     def material(code: str) -> float:
@@ -346,3 +346,8 @@ def _account(
         labour=-sum(item.hours * wage[item.crew] for item in labour),
         spoilage=-sum(pick.ripe_kg - pick.kg for item in openings for pick in item.picks) * farm.market.spoilage_per_kg,
     )
+
+
+def _spot_price(problem: Problem, strain: int) -> float:
+    """What the spot market pays for a strain at its better price [currency/kg]."""
+    return problem.farm.market.spot_price_share * problem.mean_price(strain)
