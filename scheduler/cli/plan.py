@@ -27,6 +27,9 @@ def plan(
     ] = None,
     gap: Annotated[float, typer.Option("--gap", min=0.0, max=1.0, help="Stop at this proven gap.")] = 0.005,
     seconds: Annotated[float, typer.Option("--seconds", min=0.1, help="Stop searching after so many seconds.")] = 60.0,
+    save_model: Annotated[
+        Path | None, typer.Option("--save-model", metavar="FILE", help="Also write the model there, as MPS.")
+    ] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print one JSON document.")] = False,
 ) -> None:
     """Plan bags, runs, rooms and hands week by week, in money and with a proven gap.
@@ -42,6 +45,8 @@ def plan(
         raise UsageError(f"--sure: a chance above 0 and below 1, such as 0.9, was expected; found {sure:g}")
     folder = read_farm(farm)
     start = first_week(first)
+    if save_model is not None:
+        _save(folder, start, weeks, save_model)
     safety = None
     if sure is None:
         found = search(folder, start, weeks, gap=gap, seconds=seconds)
@@ -70,6 +75,18 @@ def plan(
     )
     broken = verdict.violations or found.shortfalls or short or (safety is not None and safety.unreachable)
     raise typer.Exit(1 if broken else 0)
+
+
+def _save(folder: FarmFolder, start: Week, weeks: int, place: Path) -> None:
+    """Write the model; a place that cannot be written to is refused."""
+    from scheduler.errors import UsageError
+    from scheduler.planning.save_model import model_text
+
+    text = model_text(folder.farm, folder.orders, folder.stock, start, weeks)
+    try:
+        place.write_text(text, encoding="ascii")
+    except OSError as error:
+        raise UsageError(f"--save-model: {place} cannot be written ({error.strerror or 'unknown reason'}).") from error
 
 
 def _surely(folder: FarmFolder, start: Week, weeks: int, sure: float, *, gap: float, seconds: float) -> SurePlan:

@@ -82,3 +82,13 @@ def test_interrupt_before_a_plan_says_so() -> None:
     assert process.returncode in (3, 130)
     assert out == ""
     assert "Traceback" not in err
+
+
+def test_the_model_can_be_saved_and_a_bad_place_is_refused(tmp_path: Path) -> None:
+    file = tmp_path / "model.mps"
+    done = run("--weeks", "1", "--gap", "0.5", "--save-model", str(file))
+    assert done.returncode in {0, 1}, done.stderr
+    assert file.read_text(encoding="ascii").endswith("ENDATA\n")
+    done = run("--weeks", "1", "--save-model", str(tmp_path / "no" / "model.mps"))
+    assert (done.returncode, done.stdout) == (2, "")
+    assert "--save-model" in done.stderr
