@@ -48,7 +48,8 @@ class NormalBelief:
     def __post_init__(self) -> None:
         if not (self.lots > 0 and self.freedom > 0 and self.spread > 0):
             raise ValueError(
-                f"lots, freedom and spread above 0 were expected; found {self.lots:g}, {self.freedom:g}, {self.spread:g}"
+                f"lots, freedom and spread above 0 were expected;"
+                f" found {self.lots:g}, {self.freedom:g}, {self.spread:g}"
             )
 
     def updated(self, seen: Sequence[float]) -> NormalBelief:

@@ -14,6 +14,7 @@ import typer
 
 from scheduler.cli.check import check
 from scheduler.cli.heat import heat
+from scheduler.cli.learn import learn
 from scheduler.cli.new import new
 from scheduler.cli.plan import plan
 from scheduler.cli.strains import strains
@@ -55,6 +56,7 @@ app.command("check")(check)
 app.command("strains")(strains)
 app.command("heat")(heat)
 app.command("plan")(plan)
+app.command("learn")(learn)
 
 
 def run() -> None:
