@@ -56,6 +56,5 @@ def drift_of(strain: Strain, seen: Observations) -> Iterator[str]:
 
 
 def _sentence(key: str, codes: list[str], mean: str, usual: str, lots: int) -> str:
-    return (
-        f"{key}: {', '.join(codes)} gave {mean} on average; by the card and the {lots} lots before, {usual} was likely."
-    )
+    before = f"by the card and the {lots} lots before them, {usual} was likely"
+    return f"{key}: {', '.join(codes)} gave {mean} on average; {before}."

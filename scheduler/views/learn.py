@@ -7,7 +7,7 @@ from typing import Any
 
 from rich.console import Console
 
-from models.growth.learning import LEAST_CV, LOT_CORRELATION, PRIOR_LOTS
+from models.growth.learning import LEAST_CV, LOT_CORRELATION, PRIOR_LOTS, effective_bags
 from scheduler.learning.drift import LAST_LOTS, SHARE
 from scheduler.learning.learned import LearnAnswer, StrainLearned
 from scheduler.learning.update import FEWEST_LOTS, KeyLearned, Value
@@ -64,10 +64,11 @@ def assumptions(answer: LearnAnswer) -> list[str]:
     """Return what the answer rests on, in sentences."""
     said = [
         f"Before any lot, the card (with its preset) is believed as firmly as {PRIOR_LOTS:g} lots would be; assumed.",
-        "Lots differ among each other about as much as yield_cv and days_cv say, at least by"
-        f" {100 * LEAST_CV:g} %; how much they do is learned with the rest.",
-        f"Losses come by the lot (correlation {LOT_CORRELATION:g}, assumed): a lot of a hundred bags tells as much as"
-        f" {100 / (1 + 99 * LOT_CORRELATION):.0f} bags that were lost one by one.",
+        f"Lots differ about as much as yield_cv and days_cv say, at least by {100 * LEAST_CV:g} %; that is learned too.",
+        (
+            f"Losses come by the lot: a hundred bags of one lot tell as much as {effective_bags(100):.0f} that were lost one by one"
+            f" (correlation {LOT_CORRELATION:g}; assumed)."
+        ),
     ]
     rooms = {
         f"{one.seen.room.code} at {one.seen.room.temp_c:g} °C"
@@ -76,8 +77,8 @@ def assumptions(answer: LearnAnswer) -> list[str]:
     }
     if rooms:
         said.append(
-            f"Bags colonised in {' or '.join(sorted(rooms))}, at the card's spawn rate; colonise_days is brought back to"
-            " colonise_at_c and colonise_at_spawn_pct."
+            f"Bags colonised in {' or '.join(sorted(rooms))}, at the card's spawn rate; colonise_days is brought"
+            " back to colonise_at_c and colonise_at_spawn_pct."
         )
     return said
 
@@ -85,9 +86,8 @@ def assumptions(answer: LearnAnswer) -> list[str]:
 def show_learned(console: Console, answer: LearnAnswer, *, written: bool) -> None:
     """Print what was learned: by strain each key before and after, what drifts, and the lines for the farm file."""
     screen = Screen(console)
-    lots = answer.picks.lots
-    count = f"{len(lots)} lot{'s' if len(lots) > 1 else ''}"
-    screen.wrapped(f"{answer.farm.site.name}: what {count} of {answer.picks.name} say", style="bold")
+    count = _lots(len(answer.picks.lots))
+    screen.wrapped(f"{answer.farm.site.name}: learned from {count} of {answer.picks.name}", style="bold")
     for warning in answer.picks.warnings:
         screen.wrapped(warning.sentence(), "- ")
     for one in answer.strains:
@@ -100,8 +100,9 @@ def show_learned(console: Console, answer: LearnAnswer, *, written: bool) -> Non
 
 def _strain(screen: Screen, one: StrainLearned) -> None:
     name = f", {one.strain.name}" if one.strain.name else ""
-    days = f"{one.lots[0].first_day} to {one.lots[-1].first_day}"
-    screen.heading(f"{one.strain.code}{name}: {len(one.lots)} lots, first picks {days}")
+    first, last = one.lots[0].first_day, one.lots[-1].first_day
+    days = f"first picks {first} to {last}" if len(one.lots) > 1 else f"first pick {first}"
+    screen.heading(f"{one.strain.code}{name}: {_lots(len(one.lots))}, {days}")
     screen.line(f"{'key':<24}{'before':>10}{'after':>10}{'90 % range':>22}{'lots':>8}", "dim")
     for key in one.keys:
         for row in _rows(key):
@@ -118,10 +119,14 @@ def _strain(screen: Screen, one: StrainLearned) -> None:
         screen.wrapped(f"Drift: {sentence}", "! ", "bold")
     if one.drift:
         screen.wrapped(
-            f"The last {LAST_LOTS} lots are outside of a {100 * SHARE:.0f} % range, which happens by chance to one key in"
-            " twenty. Look for what changed before you take over values that mix the two.",
+            f"The last {LAST_LOTS} lots are outside of a {100 * SHARE:.0f} % range, which happens by chance to one key"
+            " in twenty. Look for what changed before you take over values that mix the two.",
             "  ",
         )
+
+
+def _lots(count: int) -> str:
+    return "1 lot" if count == 1 else f"{count} lots"
 
 
 def _rows(key: KeyLearned) -> list[str]:
