@@ -64,10 +64,10 @@ def assumptions(answer: LearnAnswer) -> list[str]:
     """Return what the answer rests on, in sentences."""
     said = [
         f"Before any lot, the card (with its preset) is believed as firmly as {PRIOR_LOTS:g} lots would be; assumed.",
-        f"Lots differ about as much as yield_cv and days_cv say, at least by {100 * LEAST_CV:g} %; that is learned too.",
+        f"Lots differ as yield_cv and days_cv say, by {100 * LEAST_CV:g} % at least; how much, is learned too.",
         (
-            f"Losses come by the lot: a hundred bags of one lot tell as much as {effective_bags(100):.0f} that were lost one by one"
-            f" (correlation {LOT_CORRELATION:g}; assumed)."
+            f"Losses come by the lot (correlation {LOT_CORRELATION:g}, assumed): a hundred bags of one lot tell as much"
+            f" as {effective_bags(100):.0f} that were lost one by one."
         ),
     ]
     rooms = {
