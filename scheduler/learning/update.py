@@ -86,6 +86,8 @@ def learn_days(strain: Strain, key: str, seen: Sequence[float]) -> KeyLearned:
 def learn_loss(strain: Strain, key: str, seen: Sequence[tuple[int, int]]) -> KeyLearned:
     """Update ``loss_pct`` or ``flush_loss_pct`` by bags of lots and how many of them were lost [bags].
 
+    A card that says 0 is believed as half a percent, but the new value never leaves the range from card to lots.
+
     Examples
     --------
     >>> from models.growth.examples import GREY_OYSTER
@@ -94,9 +96,13 @@ def learn_loss(strain: Strain, key: str, seen: Sequence[tuple[int, int]]) -> Key
     (4.0, 7.3)
     """
     card = getattr(strain, key)
-    after = loss_belief(card / 100).updated(seen)
+    before = loss_belief(card / 100)
+    after = before.updated(seen)
     low, high = after.interval()
-    return _scalar(key, card, 100 * after.mean, (100 * low, 100 * high), len(seen))
+    counted = after.lost + after.kept - before.lost - before.kept
+    rate = 100 * (after.lost - before.lost) / counted if counted else card
+    mean = min(max(100 * after.mean, min(card, rate)), max(card, rate))
+    return _scalar(key, card, mean, (100 * low, 100 * high), len(seen))
 
 
 def learn_shares(strain: Strain, whole: Sequence[float], flushes: Sequence[Sequence[float]]) -> KeyLearned:

@@ -135,6 +135,13 @@ def test_the_last_three_lots_may_drift(changed: dict[str, float], key: str) -> N
     assert "8 lots before" in drift[0]
 
 
+def test_a_card_without_losses_keeps_them_at_none_where_none_were_seen() -> None:
+    found = learned([lot(number) for number in range(1, 5)])
+    key = next(one for one in found.keys if one.key == "flush_loss_pct")
+    assert (key.before, key.after, key.proposed) == (0.0, 0.0, False)
+    assert key.high > 0
+
+
 def test_fewer_losses_are_no_drift() -> None:
     lots = [lot(number, start=110) for number in range(1, 12)] + [lot(number, start=100) for number in range(12, 15)]
     assert learned(lots).drift == ()

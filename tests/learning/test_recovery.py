@@ -109,7 +109,9 @@ def test_learning_does_better_than_the_card_and_than_the_lots_alone() -> None:
     for _ in range(SEASONS):
         truth = a_farm_like_the_card(rng)
         picks = season(rng, truth, 4)
-        alone = np.mean([100 * sum(one.kg for one in lot.flushes) / (lot.flushes[0].bags * DRY_KG) for lot in picks.lots])
+        alone = np.mean(
+            [100 * sum(one.kg for one in lot.flushes) / (lot.flushes[0].bags * DRY_KG) for lot in picks.lots]
+        )
         errors.append([CARD.be_pct - truth.be_pct, alone - truth.be_pct, keys(FARM, picks)["be_pct"][1] - truth.be_pct])
     card, lots, learned = np.sqrt(np.mean(np.square(errors), axis=0))
     assert learned < lots < card

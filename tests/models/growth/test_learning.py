@@ -98,7 +98,10 @@ def test_lots_may_come_in_two_parts(first: list[float], second: list[float]) -> 
 @given(st.integers(1, 30), st.floats(0.0, 30.0), st.floats(60.0, 110.0))
 def test_more_lots_of_the_same_narrow_the_range(pairs: int, half: float, centre: float) -> None:
     """Lots that differ as before: the second half of them says the same as the first."""
-    few, many = CARD.updated([centre - half, centre + half] * pairs), CARD.updated([centre - half, centre + half] * 4 * pairs)
+    few, many = (
+        CARD.updated([centre - half, centre + half] * pairs),
+        CARD.updated([centre - half, centre + half] * 4 * pairs),
+    )
     width = [high - low for low, high in (few.interval(), many.interval())]
     assert width[1] < width[0]
 
