@@ -1,7 +1,8 @@
 """Simulated seasons, whose truth is known: it is found again, and 90 % ranges hold it nine times in ten.
 
-The generator shares no formula with the updates. A farm has a yield, a colonisation time and a loss of its own; each lot
-has its luck, each bag its own on top; days are log-normal and are written down as whole days; losses are beta-binomial.
+The generator shares no formula with the updates. A farm has a yield, a colonisation time and a loss of its own; each
+lot has its luck, each bag its own on top; days are log-normal and are written down as whole days; losses are
+beta-binomial.
 """
 
 from __future__ import annotations
