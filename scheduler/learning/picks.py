@@ -110,7 +110,9 @@ def _lot(name: str, rows: Sequence[NumberedRow], farm: Farm, findings: list[Find
     findings += faults
     if faults or strain is None:
         return None
-    picks = [DayPick(one.day, one.bags, one.kg, one.flush) for _, one in days if one.bags]
+    standing = [DayPick(one.day, one.bags, one.kg, one.flush) for _, one in days if one.bags]
+    # A day without mushrooms is no pick, unless it is told to be one of a flush, or the lot never gave any.
+    picks = [one for one in standing if one.kg > 0 or one.flush is not None] or standing
     known = {column: None if one is None else getattr(one[1], column) for column, one in told.items()}
     return PickedLot(
         code=rows[0][1].lot,

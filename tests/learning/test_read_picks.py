@@ -2,13 +2,18 @@
 
 from __future__ import annotations
 
+import math
 from datetime import date
 from pathlib import Path
+from tempfile import TemporaryDirectory
 
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 
 from scheduler.errors import InputError, UsageError
 from scheduler.folder import read_farm_folder
+from scheduler.learning.learned import learn
 from scheduler.learning.picks import Picks, picked_since, read_picks
 
 FARM = read_farm_folder(Path(__file__).parents[1] / "broken_farms" / "base").farm
@@ -51,6 +56,14 @@ def test_the_flush_column_goes_before_the_gaps(tmp_path: Path) -> None:
     text = "lot,day,kg,bags,flush\n" + "".join(f"27W01-OYS-1,2027-{one}\n" for one in days)
     flushes = read(tmp_path, text).lots[0].flushes
     assert [(one.number, one.kg, one.bags) for one in flushes] == [(1, 40, 97), (2, 9, 90)]
+
+
+def test_a_day_without_mushrooms_is_no_flush(tmp_path: Path) -> None:
+    head, lot = "lot,day,kg,bags\n", "27W01-OYS-1"
+    picks = read(tmp_path, f"{head}{lot},2027-02-03,20,97\n{lot},2027-02-10,0,97\n{lot},2027-02-15,9,97\n")
+    assert [one.first.day for one in picks.lots[0].flushes] == [3, 15]
+    barren = read(tmp_path, f"{head}{lot},2027-02-03,0,97\n").lots[0]
+    assert [(one.number, one.kg) for one in barren.flushes] == [(1, 0)]
 
 
 @pytest.mark.parametrize(("day", "flushes"), [("2027-02-09", 1), ("2027-02-10", 2)])
@@ -125,6 +138,34 @@ def test_very_many_faults_are_cut(tmp_path: Path) -> None:
     lines = str(caught.value).splitlines()
     assert len(lines) == 20
     assert "31 more faults" in lines[-1]
+
+
+@settings(max_examples=150, deadline=None)
+@given(
+    st.lists(
+        st.tuples(
+            st.sampled_from(["27W01-OYS-1", "27W02-LIO-1", "x", ""]),
+            st.sampled_from(["2027-02-03", "2027-02-20", "2027-03-09", "1.3.2027", "never"]),
+            st.sampled_from(["0", "4", "7,5", "1e9", "-1"]),
+            st.sampled_from(["0", "1", "90", "100", "1.5"]),
+            st.sampled_from(["", "1", "2", "3", "8"]),
+            st.sampled_from(["", "2027-01-08", "2027-02-03"]),
+            st.sampled_from(["", "100", "0"]),
+            st.sampled_from(["", "2027-01-08", "2027-01-27"]),
+        ),
+        max_size=8,
+    )
+)
+def test_any_rows_are_read_and_learned_from_or_refused(rows: list[tuple[str, ...]]) -> None:
+    head = "lot;day;kg;bags;flush;inoculated;bags_inoculated;ready\n"
+    with TemporaryDirectory() as folder:
+        try:
+            found = learn(FARM, read(Path(folder), head + "".join(";".join(row) + "\n" for row in rows)))
+        except InputError:
+            return
+    for key in (key for one in found.strains for key in one.keys):
+        values = zip(*(v if isinstance(v, tuple) else (v,) for v in (key.low, key.after, key.high)), strict=True)
+        assert all(math.isfinite(low) and low <= high for low, _, high in values), key
 
 
 def test_a_file_that_is_not_there(tmp_path: Path) -> None:
