@@ -1,135 +1,303 @@
-"""Conjugate Bayesian updates: a mean with unknown spread, and a share of losses, each from a prior and from lots."""
+"""What lots that are over say about a strain card: conjugate updates of what was believed before."""
 
 from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from math import sqrt
+from math import fsum, log1p, sqrt
+
+PRIOR_LOTS = 2.0
+"""Lots that the card's value counts for, beside those that were seen [lots]; assumed."""
+PRIOR_SPREAD_LOTS = 4.0
+"""Degrees of freedom that the card's coefficient of variation counts for [-]; assumed."""
+LEAST_CV = 0.02
+"""Coefficient of variation taken where the card has a smaller one, as no two lots are alike [-]; assumed."""
+LOT_CORRELATION = 0.05
+"""Correlation of losses among the bags of one lot, as moulds and slips at the bench reach many at once [-]; assumed."""
+LEAST_LOSS = 0.005
+"""Loss taken as the centre of the belief where the card says less, so that it can be learned [-]; assumed."""
 
 
 @dataclass(frozen=True, slots=True)
-class MeanBelief:
-    """What is believed of a mean and of the spread round it: normal-inverse-gamma.
+class NormalBelief:
+    """What is believed of the mean and the spread of something that differs from lot to lot.
 
     Attributes
     ----------
     mean : float
-        Expected mean.
+        Expected mean, in the unit of what is seen.
     lots : float
-        How many lots the belief in the mean is worth [-].
-    shape, scale : float
-        Of the inverse gamma of the variance; ``scale / shape`` is about the variance.
+        Lots that this mean counts for [lots].
+    freedom : float
+        Degrees of freedom of the spread [-].
+    spread : float
+        Standard deviation from lot to lot, in the unit of the mean.
+
+    Notes
+    -----
+    The normal-inverse-gamma distribution: the variance is inverse-gamma with shape ``freedom / 2`` and scale
+    ``freedom × spread² / 2``, and the mean, given the variance, is normal with ``variance / lots`` (A. Gelman et al.
+    (2013), Bayesian Data Analysis, 3rd edition, section 3.3). Seen lots leave it one of the same kind.
     """
 
     mean: float
     lots: float
-    shape: float
-    scale: float
+    freedom: float
+    spread: float
 
-    @classmethod
-    def prior(cls, mean: float, spread: float, lots: float, spread_lots: float) -> MeanBelief:
-        """A belief before any lot.
+    def __post_init__(self) -> None:
+        if not (self.lots > 0 and self.freedom > 0 and self.spread > 0):
+            raise ValueError(
+                f"lots, freedom and spread above 0 were expected;"
+                f" found {self.lots:g}, {self.freedom:g}, {self.spread:g}"
+            )
+
+    def updated(self, seen: Sequence[float]) -> NormalBelief:
+        """What is believed once lots were seen.
 
         Parameters
         ----------
-        mean : float
-            The mean that is believed.
-        spread : float
-            Standard deviation between lots that is believed, above 0.
-        lots, spread_lots : float
-            How many lots the beliefs in mean and in spread are worth [-].
-        """
-        return cls(mean, lots, spread_lots / 2, spread_lots / 2 * spread**2)
-
-    def after(self, values: Sequence[float]) -> MeanBelief:
-        """The belief after some lots.
-
-        Notes
-        -----
-        With n values of mean x and sum of squares S about it: lots k + n, mean (k m + n x) / (k + n), shape a + n/2,
-        scale b + S/2 + k n (x - m)² / (2 (k + n)) (DeGroot 1970, Optimal Statistical Decisions, section 9.6; from
-        memory).
+        seen : sequence of float
+            One value for each lot, in the unit of the mean.
 
         Examples
         --------
-        A belief of 80 worth two lots, and lots of 90 and 100: (2 × 80 + 190) / 4.
+        Two lots of 90 and 100 %, where 85 % counted for two lots: 360 over 4.
 
-        >>> MeanBelief.prior(80, 10, 2, 2).after([90, 100]).mean
-        87.5
+        >>> after = NormalBelief(mean=85.0, lots=2.0, freedom=4.0, spread=17.0).updated([90.0, 100.0])
+        >>> after.mean, after.lots, after.freedom, round(after.spread, 3)
+        (90.0, 4.0, 6.0, 14.754)
         """
-        n = len(values)
-        if n == 0:
+        count = len(seen)
+        if count == 0:
             return self
-        x = sum(values) / n
-        total = self.lots + n
-        squares = sum((value - x) ** 2 for value in values)
-        return MeanBelief(
-            mean=(self.lots * self.mean + n * x) / total,
-            lots=total,
-            shape=self.shape + n / 2,
-            scale=self.scale + squares / 2 + self.lots * n * (x - self.mean) ** 2 / (2 * total),
+        average = fsum(seen) / count
+        lots, freedom = self.lots + count, self.freedom + count
+        squares = (
+            self.freedom * self.spread**2
+            + fsum((value - average) ** 2 for value in seen)
+            + self.lots * count / lots * (average - self.mean) ** 2
         )
+        mean = (self.lots * self.mean + count * average) / lots
+        return NormalBelief(mean, lots, freedom, sqrt(squares / freedom))
 
-    def interval(self, level: float = 0.9) -> tuple[float, float]:
-        """Range that holds the mean with a probability: Student's t with 2 × shape degrees of freedom."""
-        return self._range(level, sqrt(self.scale / self.shape / self.lots))
+    def interval(self, share: float = 0.90) -> tuple[float, float]:
+        """Range in which the mean lies with a probability, by Student's t, in the unit of the mean.
 
-    def of_next(self, level: float = 0.95, count: int = 1) -> tuple[float, float]:
-        """Range that holds the mean of the next so many lots with a probability."""
-        return self._range(level, sqrt(self.scale / self.shape * (1 / self.lots + 1 / count)))
+        Examples
+        --------
+        >>> low, high = NormalBelief(mean=85.0, lots=2.0, freedom=4.0, spread=17.0).interval()
+        >>> round(low, 1), round(high, 1)  # 85 ± 2.132 × 17 / √2
+        (59.4, 110.6)
+        """
+        return self._range(share, 1 / self.lots)
 
-    def _range(self, level: float, width: float) -> tuple[float, float]:
-        from scipy.stats import t
+    def predicted(self, lots: int, share: float = 0.95) -> tuple[float, float]:
+        """Range in which the average of lots to come lies with a probability, in the unit of the mean.
 
-        half = float(t.ppf(0.5 + level / 2, 2 * self.shape)) * width
+        Parameters
+        ----------
+        lots : int
+            How many lots are averaged, from 1 [lots].
+        share : float
+            The probability [-].
+
+        Raises
+        ------
+        ValueError
+            Fewer than one lot is asked for.
+        """
+        if lots < 1:
+            raise ValueError(f"1 lot or more was expected; found {lots}")
+        return self._range(share, 1 / self.lots + 1 / lots)
+
+    def _range(self, share: float, variances: float) -> tuple[float, float]:
+        from scipy.special import stdtrit
+
+        half = float(stdtrit(self.freedom, 0.5 + _probability(share) / 2)) * self.spread * sqrt(variances)
         return self.mean - half, self.mean + half
 
 
 @dataclass(frozen=True, slots=True)
-class ShareBelief:
-    """What is believed of a share of bags lost: a beta distribution with so many bags lost and kept [-]."""
+class LossBelief:
+    """What is believed of the share of bags that are lost.
+
+    Attributes
+    ----------
+    lost, kept : float
+        Bags lost and bags kept that it rests on, counted as if each had its own luck [bags].
+
+    Notes
+    -----
+    The beta distribution with these two parameters, conjugate to the binomial.
+    """
 
     lost: float
     kept: float
 
-    @classmethod
-    def prior(cls, share: float, bags: float) -> ShareBelief:
-        """A belief worth so many bags of their own; a share of nothing is taken for half a bag."""
-        lost = min(max(share * bags, 0.5), bags - 0.5)
-        return cls(lost, bags - lost)
+    def __post_init__(self) -> None:
+        if not (self.lost > 0 and self.kept > 0):
+            raise ValueError(f"lost and kept bags above 0 were expected; found {self.lost:g} and {self.kept:g}")
 
     @property
     def mean(self) -> float:
-        """Expected share [-]."""
+        """Expected share lost [-]."""
         return self.lost / (self.lost + self.kept)
 
-    def after(self, lots: Sequence[tuple[float, float]], correlation: float) -> ShareBelief:
-        """The belief after lots of (bags, bags lost).
+    def updated(self, seen: Sequence[tuple[int, int]], correlation: float = LOT_CORRELATION) -> LossBelief:
+        """What is believed once lots were seen.
 
-        Notes
-        -----
-        Bags of a lot are lost together, so that a lot of n bags says as much as n / (1 + (n - 1) r) bags of their own
-        at a correlation r (Kish's design effect; Kish 1965, Survey Sampling; from memory).
+        Parameters
+        ----------
+        seen : sequence of (int, int)
+            Bags of each lot, and how many of them were lost [bags].
+        correlation : float
+            Correlation of losses among the bags of a lot, 0 to 1 [-].
 
         Examples
         --------
-        Without correlation each bag counts: 2 of 50 believed, 8 of 50 lost.
+        A hundred bags of one lot count as 100 / (1 + 99 × 0.05) = 16.8:
 
-        >>> ShareBelief.prior(0.04, 50).after([(50, 8)], 0.0).mean
-        0.1
+        >>> after = LossBelief(1.6, 38.4).updated([(100, 10)])
+        >>> round(after.lost + after.kept, 2), round(after.mean, 4)
+        (56.81, 0.0578)
         """
         lost, kept = self.lost, self.kept
-        for bags, gone in lots:
-            if bags > 0:
-                weight = 1 / (1 + (bags - 1) * correlation)
-                lost += weight * gone
-                kept += weight * (bags - gone)
-        return ShareBelief(lost, kept)
+        for bags, gone in seen:
+            if not 0 <= gone <= bags:
+                raise ValueError(f"0 to {bags} lost bags were expected; found {gone}")
+            if bags:
+                weight = effective_bags(bags, correlation) / bags
+                lost, kept = lost + gone * weight, kept + (bags - gone) * weight
+        return LossBelief(lost, kept)
 
-    def interval(self, level: float = 0.9) -> tuple[float, float]:
-        """Range that holds the share with a probability [-]."""
-        from scipy.stats import beta
+    def interval(self, share: float = 0.90) -> tuple[float, float]:
+        """Range in which the share lost lies with a probability, the same chance on either side [-].
 
-        tails = (0.5 - level / 2, 0.5 + level / 2)
-        low, high = (float(beta.ppf(tail, self.lost, self.kept)) for tail in tails)
-        return low, high
+        Examples
+        --------
+        >>> [round(end, 3) for end in LossBelief(1.6, 38.4).interval()]
+        [0.005, 0.1]
+        """
+        from scipy.special import betaincinv
+
+        tail = (1 - _probability(share)) / 2
+        return float(betaincinv(self.lost, self.kept, tail)), float(betaincinv(self.lost, self.kept, 1 - tail))
+
+    def most(self, bags: float, share: float = 0.95) -> float:
+        """Share lost that the next bags stay below with a probability [-].
+
+        Parameters
+        ----------
+        bags : float
+            Bags to come, counted as if each had its own luck [bags].
+        share : float
+            The probability of a range that leaves the same chance on either side, of which this is the upper end [-].
+
+        Notes
+        -----
+        The share among N bags to come has the mean m of this belief and the variance
+        ``m (1 - m) / N × (1 + (N - 1) / (lost + kept + 1))`` (beta-binomial); its quantile is taken from the beta
+        distribution of that mean and variance.
+        """
+        spread = (1 + (max(bags, 1.0) - 1) / (self.lost + self.kept + 1)) / max(bags, 1.0)
+        strength = max(1 / spread - 1, 1e-6)
+        return LossBelief(self.mean * strength, (1 - self.mean) * strength).interval(share)[1]
+
+
+def effective_bags(bags: int, correlation: float = LOT_CORRELATION) -> float:
+    """How many bags with a luck of their own the bags of one lot count for.
+
+    Parameters
+    ----------
+    bags : int
+        Bags of the lot [bags].
+    correlation : float
+        Correlation of losses among them, 0 to 1 [-].
+
+    Returns
+    -------
+    float
+        ``bags / (1 + (bags - 1) × correlation)``, the design effect of a cluster (L. Kish (1965), Survey Sampling,
+        section 5.4) [bags].
+
+    Raises
+    ------
+    ValueError
+        The correlation is not within 0 to 1.
+
+    Examples
+    --------
+    >>> [round(effective_bags(bags), 1) for bags in (1, 20, 100, 10_000)]
+    [1.0, 10.3, 16.8, 20.0]
+    """
+    if not 0 <= correlation <= 1:
+        raise ValueError(f"a correlation within 0 to 1 was expected; found {correlation:g}")
+    return bags / (1 + (bags - 1) * correlation)
+
+
+def value_belief(value: float, cv: float) -> NormalBelief:
+    """What a card believes of a value such as a yield, before any lot was seen.
+
+    Parameters
+    ----------
+    value : float
+        The card's value, above 0, in any unit.
+    cv : float
+        Its coefficient of variation from lot to lot [-].
+
+    Examples
+    --------
+    >>> value_belief(85.0, 0.20)
+    NormalBelief(mean=85.0, lots=2.0, freedom=4.0, spread=17.0)
+    """
+    return NormalBelief(value, PRIOR_LOTS, PRIOR_SPREAD_LOTS, value * max(cv, LEAST_CV))
+
+
+def days_belief(cv: float) -> NormalBelief:
+    """What a card believes of the logarithm of days over the card's days, before any lot was seen.
+
+    Parameters
+    ----------
+    cv : float
+        The card's coefficient of variation of growing times [-].
+
+    Notes
+    -----
+    Days are log-normal: the logarithm has the standard deviation ``√(ln(1 + cv²))``.
+
+    Examples
+    --------
+    >>> round(days_belief(0.10).spread, 5)
+    0.09975
+    """
+    return NormalBelief(0.0, PRIOR_LOTS, PRIOR_SPREAD_LOTS, sqrt(log1p(max(cv, LEAST_CV) ** 2)))
+
+
+def loss_belief(loss: float, correlation: float = LOT_CORRELATION) -> LossBelief:
+    """What a card believes of a loss, before any lot was seen.
+
+    Parameters
+    ----------
+    loss : float
+        The card's loss, 0 to below 1 [-].
+    correlation : float
+        Correlation of losses among the bags of a lot, above 0 [-].
+
+    Notes
+    -----
+    It counts for `PRIOR_LOTS` large lots, each ``1 / correlation`` bags with a luck of their own.
+
+    Examples
+    --------
+    >>> loss_belief(0.04)
+    LossBelief(lost=1.6, kept=38.4)
+    """
+    strength, centre = PRIOR_LOTS / correlation, max(loss, LEAST_LOSS)
+    return LossBelief(strength * centre, strength * (1 - centre))
+
+
+def _probability(share: float) -> float:
+    if not 0 < share < 1:
+        raise ValueError(f"a probability between 0 and 1 was expected; found {share:g}")
+    return share

@@ -1,4 +1,4 @@
-"""``bagweek learn``: what the farm's own pickings say of its strains."""
+"""``bagweek learn``: what the pickings say about the strain cards of the farm file."""
 
 from __future__ import annotations
 
@@ -15,27 +15,30 @@ def learn(
     picks: Annotated[
         Path | None, typer.Option("--picks", metavar="FILE", help="Pickings [default: picks.csv of the farm folder].")
     ] = None,
-    write: Annotated[bool, typer.Option("--write", help="Put what was learned into farm.toml.")] = False,
+    since: Annotated[
+        str | None, typer.Option("--since", metavar="DAY", help="Only lots first picked on this day or later.")
+    ] = None,
+    write: Annotated[bool, typer.Option("--write", help="Put what is proposed into farm.toml.")] = False,
     as_json: Annotated[bool, typer.Option("--json", help="Print one JSON document.")] = False,
 ) -> None:
-    """Learn yields, flush shares, days and losses of each strain from what was picked.
+    """Learn yields, days and losses from picked lots, and propose lines for farm.toml.
 
-    Exit code 0: done; 1: the last lots drift away from those before; 2: bad input.
+    Exit code 0: done; 1: the last lots of a strain do what those before them did not; 2: bad input.
     """
     from scheduler.folder import read_farm_folder
-    from scheduler.folder.edit import set_values
-    from scheduler.learning.learn import changes
-    from scheduler.learning.learn import learn as learn_from
-    from scheduler.learning.picks import FILE, read_picks
-    from scheduler.views.learn import learn_document, show_learn
+    from scheduler.learning.learned import learn as learn_from
+    from scheduler.learning.learned import write as write_lines
+    from scheduler.learning.picks import picked_since, read_picks
+    from scheduler.views.learn import learn_document, show_learned
 
-    folder = read_farm_folder(farm)
-    learned = learn_from(folder.farm, read_picks(picks or farm / FILE, folder.farm))
-    values = changes(learned)
-    if write and values:
-        set_values(farm / "farm.toml", values)
+    file = read_farm_folder(farm).farm
+    read = read_picks(farm / "picks.csv" if picks is None else picks, file)
+    found = learn_from(file, read if since is None else picked_since(read, since))
+    written = write and bool(found.lines())
+    if written:
+        write_lines(found, farm)
     if as_json:
-        print_document(learn_document(folder.farm, learned, written=write and bool(values)), indent=2)
+        print_document(learn_document(found, written=written), indent=2)
     else:
-        show_learn(console(), folder.farm, learned, written=write)
-    raise typer.Exit(1 if any(one.drift for one in learned) else 0)
+        show_learned(console(), found, written=written)
+    raise typer.Exit(1 if found.drifts else 0)

@@ -16,14 +16,12 @@ from scheduler.folder.table_file import Columns, Table
 Row = TypeVar("Row", bound=BaseModel)
 
 _DECIMAL_COLUMNS = frozenset({"kg", "price_per_kg"})
-_WHOLE_COLUMNS = frozenset({"priority", "bags", "flushes_picked"})
+_WHOLE_COLUMNS = frozenset({"priority", "bags", "flushes_picked", "bags_inoculated", "flush"})
 _OTHER_COLUMNS: Mapping[str, Callable[[str], object]] = {
     "weekday": weekday,
     "first_week": iso_week,
     "last_week": iso_week,
-    "since": day,
-    "accepts": codes,
-    "part": yes_or_no,
+    **dict.fromkeys(("since", "day", "inoculated", "ready", "opened"), day),
 }
 
 

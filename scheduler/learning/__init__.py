@@ -1,1 +1,1 @@
-"""Learn from pickings: what lots have given and how long they took, against what the cards say."""
+"""Learn strain cards from lots that were picked: read the pickings, update what was believed, propose new values."""

@@ -1,85 +1,117 @@
-"""What each lot says of its strain: yield by flush, days, losses."""
+"""A lot as its rows tell it: strain, dates, bags, and its flushes."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
-from itertools import pairwise
-
-from models.farm import Farm, Strain
-from models.growth.colonisation import colonisation_days
-from scheduler.learning.picks import Pick, PickedLot
+from collections.abc import Sequence
+from dataclasses import dataclass
+from datetime import date
 
 
 @dataclass(frozen=True, slots=True)
-class LotFacts:
-    """One lot in numbers.
+class Flush:
+    """One flush of a lot.
 
     Attributes
     ----------
-    flush_kg : tuple of float
-        Kilograms by flush, as far as it was picked [kg].
-    efficiency : tuple of float
-        The same over dry substrate of the bags that stood at the first flush [-].
-    complete : bool
-        Whether it was picked to the last flush of its card.
-    colonised, pins, rests : float or tuple
-        Days from inoculation to ready over those the card gives in the farm's room; days from opening to the first
-        pick; days between flushes; None and empty where not noted [-, d, d].
-    lost, lost_between : tuple of (bags, lost)
-        In colonisation, and between flushes [bags].
+    number : int
+        1 for the first.
+    first, last : date
+        First and last day it was picked.
+    bags : int
+        Bags that stood on the first of these days [bags].
+    kg : float
+        Fresh mushrooms of all its days [kg].
+    """
+
+    number: int
+    first: date
+    last: date
+    bags: int
+    kg: float
+
+
+@dataclass(frozen=True, slots=True)
+class PickedLot:
+    """A lot that was picked, or lost.
+
+    Attributes
+    ----------
+    code, strain : str
+        Lot code and strain code.
+    flushes : tuple of Flush
+        In order; empty for a lot that was lost before its first flush.
+    inoculated, ready, opened : date or None
+        Where they were written down.
+    bags_inoculated : int or None
+        Bags inoculated, where it was written down [bags].
+    gone : date or None
+        Day on which no bag was left, where a row says so.
     """
 
     code: str
-    flush_kg: tuple[float, ...]
-    efficiency: tuple[float, ...]
-    complete: bool
-    colonised: float | None = None
-    pins: float | None = None
-    rests: tuple[float, ...] = ()
-    lost: tuple[float, float] | None = None
-    lost_between: tuple[tuple[float, float], ...] = field(default=())
+    strain: str
+    flushes: tuple[Flush, ...]
+    inoculated: date | None = None
+    ready: date | None = None
+    opened: date | None = None
+    bags_inoculated: int | None = None
+    gone: date | None = None
+
+    @property
+    def first_day(self) -> date:
+        """Day of its first pick, or the day it was gone."""
+        day = self.flushes[0].first if self.flushes else self.gone
+        if day is None:
+            raise ValueError(f"lot {self.code} has neither a flush nor a day on which it was gone")
+        return day
+
+    @property
+    def kept_flushes(self) -> tuple[Flush, ...]:
+        """Flushes that follow each other without one left out, from the first."""
+        return tuple(one for place, one in enumerate(self.flushes, start=1) if one.number == place)
 
 
-def facts_of(farm: Farm, lot: PickedLot) -> LotFacts:
-    """Work a lot out."""
-    card = farm.strain_called(lot.strain)
-    flushes = _flushes(card, lot)
-    dry = farm.bag_of(card).wet_kg * (1 - farm.recipe_of(card).water_pct / 100)
-    bags = [max(pick.bags for pick in flush) for flush in flushes]
-    kilograms = tuple(sum(pick.kg for pick in flush) for flush in flushes)
-    first_days = [flush[0].day for flush in flushes]
-    opened, inoculated, ready = (lot.noted.get(key) for key in ("opened", "inoculated", "ready"))
-    colonised = None
-    if inoculated is not None and ready is not None:
-        room = next((one for one in farm.rooms_of("colonisation") if card.grows_in(one.temp_c)), None)
-        days = (ready - inoculated).days - card.mature_days
-        if room is not None and days > 0:
-            colonised = days / colonisation_days(card, room.temp_c)
-    made = lot.noted.get("bags_inoculated")
-    return LotFacts(
-        code=lot.code,
-        flush_kg=kilograms,
-        efficiency=tuple(kg / (bags[0] * dry) for kg in kilograms),
-        complete=len(flushes) >= len(card.flush_share),
-        colonised=colonised,
-        pins=None if opened is None else float(max(1, (first_days[0] - opened).days)),
-        rests=tuple(float((b - a).days) for a, b in pairwise(first_days)),
-        lost=None if made is None else (float(made), float(made - bags[0])),
-        lost_between=tuple((float(a), float(a - b)) for a, b in pairwise(bags)),
-    )
+@dataclass(frozen=True, slots=True)
+class DayPick:
+    """What one day gave: the day, the bags that stood, the kilograms, and the flush where it was written down."""
+
+    day: date
+    bags: int
+    kg: float
+    flush: int | None
 
 
-def _flushes(card: Strain, lot: PickedLot) -> list[list[Pick]]:
-    """Picks by flush: as noted, else a new one after a gap of more than half a rest."""
-    found: list[list[Pick]] = []
-    last_flush: int | None = None
-    for pick in lot.picks:
-        if found and pick.flush is not None and last_flush is not None:
-            new = pick.flush != last_flush
+def flushes_of(picks: Sequence[DayPick], rest_days: int) -> tuple[Flush, ...]:
+    """Put the days of a lot together to flushes.
+
+    Parameters
+    ----------
+    picks : sequence of DayPick
+        In the order of their days, with bags; all of them with a flush, or none.
+    rest_days : int
+        Days from one flush to the next, as the card has it [d]. Without flush numbers, more than half of it between
+        two picks starts a new flush.
+
+    Examples
+    --------
+    >>> days = [DayPick(date(2027, 3, day), 100, 8.0, None) for day in (1, 3, 13, 14)]
+    >>> [(one.number, one.first.day, one.kg) for one in flushes_of(days, rest_days=12)]
+    [(1, 1, 16.0), (2, 13, 16.0)]
+    """
+    groups: list[list[DayPick]] = []
+    for pick in picks:
+        before = groups[-1][-1] if groups else None
+        if before is None:
+            fresh = True
+        elif pick.flush is not None:
+            fresh = pick.flush != before.flush
         else:
-            new = not found or (pick.day - found[-1][-1].day).days > card.rest_days / 2
-        if new:
-            found.append([])
-        found[-1].append(pick)
-        last_flush = pick.flush
-    return found
+            fresh = (pick.day - before.day).days > rest_days / 2
+        if fresh:
+            groups.append([pick])
+        else:
+            groups[-1].append(pick)
+    return tuple(
+        Flush(group[0].flush or place, group[0].day, group[-1].day, group[0].bags, sum(one.kg for one in group))
+        for place, group in enumerate(groups, start=1)
+    )
