@@ -8,6 +8,9 @@ from pydantic import Field, model_validator
 
 from models.farm.units import FarmModel
 
+LOSS_CORRELATION = 0.05
+"""How alike the bags of a lot are in being lost, where nothing else is said [-]; assumed."""
+
 
 class Spread(FarmModel):
     """What varies together: the whole farm, the bags of a lot, or each bag by itself."""
@@ -16,7 +19,7 @@ class Spread(FarmModel):
     """Share of a bag's yield variance that all bags of the farm have in common [0-1]; assumed."""
     lot_share: Annotated[float, Field(ge=0, le=1, allow_inf_nan=False)] = 0.35
     """Share of it that the bags of a lot have in common [0-1]; assumed. The rest is each bag's own."""
-    loss_correlation: Annotated[float, Field(ge=0, le=0.99, allow_inf_nan=False)] = 0.10
+    loss_correlation: Annotated[float, Field(ge=0, le=0.99, allow_inf_nan=False)] = LOSS_CORRELATION
     """How alike the bags of a lot are in being lost [0-1]; 0: each by itself; assumed."""
 
     @model_validator(mode="after")

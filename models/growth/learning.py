@@ -6,13 +6,15 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from math import fsum, log1p, sqrt
 
+from models.farm.spread import LOSS_CORRELATION
+
 PRIOR_LOTS = 2.0
 """Lots that the card's value counts for, beside those that were seen [lots]; assumed."""
 PRIOR_SPREAD_LOTS = 4.0
 """Degrees of freedom that the card's coefficient of variation counts for [-]; assumed."""
 LEAST_CV = 0.02
 """Coefficient of variation taken where the card has a smaller one, as no two lots are alike [-]; assumed."""
-LOT_CORRELATION = 0.05
+LOT_CORRELATION = LOSS_CORRELATION
 """Correlation of losses among the bags of one lot, as moulds and slips at the bench reach many at once [-]; assumed."""
 LEAST_LOSS = 0.005
 """Loss taken as the centre of the belief where the card says less, so that it can be learned [-]; assumed."""

@@ -57,6 +57,7 @@ app.command("check")(check)
 app.command("strains")(strains)
 app.command("heat")(heat)
 app.command("plan")(plan)
+app.command("forecast")(forecast)
 app.command("learn")(learn)
 
 

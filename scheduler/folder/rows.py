@@ -22,6 +22,8 @@ _OTHER_COLUMNS: Mapping[str, Callable[[str], object]] = {
     "first_week": iso_week,
     "last_week": iso_week,
     **dict.fromkeys(("since", "day", "inoculated", "ready", "opened"), day),
+    "accepts": codes,
+    "part": yes_or_no,
 }
 
 
