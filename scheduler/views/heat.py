@@ -4,11 +4,12 @@ from __future__ import annotations
 
 from bisect import bisect_right
 from calendar import month_name
+from collections.abc import Sequence
 from typing import Any
 
 from rich.console import Console
 
-from models.thermal.curve import by_minute
+from models.thermal.curve import CurveRow, by_minute
 from models.thermal.cycle import Cycle
 from models.thermal.lethality import ORGANISMS
 from scheduler.heating.answer import HeatAnswer
@@ -113,7 +114,7 @@ def show_heat(console: Console, answer: HeatAnswer) -> None:
     show_question(screen, answer.question, cycle.boiling_c)
     _times(screen, answer)
     _phases(screen, answer)
-    show_course(screen, cycle)
+    show_course(screen, cycle.curve)
     _energy(screen, answer)
     _mix(screen, answer)
     screen.heading("Kill at the slowest core, in powers of ten: indicative only")
@@ -170,20 +171,19 @@ def _phases(screen: Screen, answer: HeatAnswer) -> None:
         screen.line(f"{name:<27}{hours:>8.2f}{f'{passed:.2f} h':>12}{clock:>17}{around:>5.1f} °C{core:>5.1f} °C")
 
 
-def show_course(screen: Screen, cycle: Cycle) -> None:
+def show_course(screen: Screen, curve: Sequence[CurveRow]) -> None:
     """Draw what surrounds the bags and the slowest core over the hours, and the element's power below."""
     screen.heading("Its course")
-    times = [row.minutes / 60 for row in cycle.curve]
+    times = [row.minutes / 60 for row in curve]
     draw(
         screen,
         (
-            Series("around the bags", times, [row.steam_c for row in cycle.curve], ("·", ".")),
-            Series("slowest core", times, [row.core_c for row in cycle.curve], ("●", "o")),
+            Series("around the bags", times, [row.steam_c for row in curve], ("·", ".")),
+            Series("slowest core", times, [row.core_c for row in curve], ("●", "o")),
         ),
         unit="°C",
     )
-    width = screen.width - 8
-    bars = _binned([row.element_kw for row in cycle.curve], times, width)
+    bars = _binned([row.element_kw for row in curve], times, screen.width - 8)
     screen.line(f"{'kW':>5}  {spark(bars, ascii_only=screen.ascii_only)}")
 
 

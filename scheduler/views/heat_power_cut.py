@@ -9,8 +9,7 @@ from rich.console import Console
 from models.thermal.curve import by_minute
 from models.thermal.interruption import WARM_C
 from scheduler.heating.power_cut import PowerCut
-from scheduler.views.chart import Series, draw
-from scheduler.views.heat import SAFETY, question_document, show_cautions, show_question
+from scheduler.views.heat import SAFETY, question_document, show_cautions, show_course, show_question
 from scheduler.views.screen import Screen
 
 
@@ -75,14 +74,5 @@ def show_power_cut(console: Console, cut: PowerCut) -> None:
     screen.heading("What to do")
     for words in cut.advice:
         screen.wrapped(words, "- ")
-    screen.heading("Its course")
-    times = [row.minutes / 60 for row in found.curve]
-    draw(
-        screen,
-        (
-            Series("around the bags", times, [row.steam_c for row in found.curve], ("·", ".")),
-            Series("slowest core", times, [row.core_c for row in found.curve], ("●", "o")),
-        ),
-        unit="°C",
-    )
+    show_course(screen, found.curve)
     show_cautions(screen, planned.cautions)
