@@ -1,0 +1,137 @@
+"""One run of the solver: the best values so far are kept here, so that an ended search still gives a schedule."""
+
+from __future__ import annotations
+
+import math
+import threading
+import time
+from dataclasses import dataclass
+from typing import Any
+
+from ortools.sat.python import cp_model
+
+from scheduler.timetable.core.model import Model
+from scheduler.timetable.core.options import Options
+from scheduler.timetable.core.schedule import Status
+
+TURN_SECONDS = 0.05
+"""How often a running search is asked to stop once it should [s]."""
+ROUNDING = 1e-6
+"""Prices are whole: a bound may be rounded up, but not for the last digits of a float."""
+
+
+@dataclass
+class Found:
+    """What a search came to; ``values`` by index of the watched variables, empty where there is no schedule."""
+
+    values: dict[int, int]
+    objective: int
+    bound: int
+    status: Status
+    stop: str
+    seconds: float
+    deterministic: float
+
+
+class _Keeper(cp_model.CpSolverSolutionCallback):
+    """Keeps the best values and tells of them."""
+
+    def __init__(self, model: Model, options: Options, started: float) -> None:
+        super().__init__()
+        self.values: dict[int, int] = {}
+        self.price = 0
+        self._watched = model.watched
+        self._options = options
+        self._started = started
+
+    def on_solution_callback(self) -> None:
+        """Keep a better solution; the solver calls this by name."""
+        self.values = {variable.index: int(self.value(variable)) for variable in self._watched}
+        self.price = round(self.objective_value)
+        if self._options.progress:
+            elapsed = time.perf_counter() - self._started
+            self._options.progress(elapsed, self.objective_value, self.best_objective_bound)
+
+
+def search(model: Model, options: Options, *, linear: bool = True) -> Found:
+    """Search until proven, or a limit, or a stop; Ctrl-C ends it like a stop.
+
+    Parameters
+    ----------
+    linear : bool
+        Whether linear relaxations help: they do for costs and do harm where only the end counts.
+    """
+    started = time.perf_counter()
+    solver = _solver(options, linear)
+    keeper = _Keeper(model, options, started)
+    done = threading.Event()
+    result: list[Any] = []
+
+    def work() -> None:
+        try:
+            result.append(solver.solve(model.cp, keeper))
+        finally:
+            done.set()
+
+    asked = ""
+    if options.stop is not None and options.stop.is_set():
+        return Found({}, 0, 0, "unknown", "stopped", 0.0, 0.0)
+    thread = threading.Thread(target=work, daemon=True)
+    thread.start()
+    while not done.is_set():
+        try:
+            done.wait(TURN_SECONDS)
+        except KeyboardInterrupt:
+            asked = "interrupted"
+        if options.stop is not None and options.stop.is_set():
+            asked = asked or "stopped"
+        if asked and not done.is_set():
+            solver.stop_search()
+    thread.join()
+    if not result:
+        raise RuntimeError("the solver ended without an answer")
+    return _found(model, options, solver, result[0], keeper, asked, time.perf_counter() - started)
+
+
+def _solver(options: Options, linear: bool) -> Any:
+    solver = cp_model.CpSolver()
+    parameters = solver.parameters
+    parameters.num_workers = options.workers
+    parameters.interleave_search = options.interleave_search
+    parameters.random_seed = options.seed
+    parameters.max_deterministic_time = options.max_deterministic_time
+    parameters.max_time_in_seconds = options.seconds
+    parameters.relative_gap_limit = options.gap
+    parameters.catch_sigint_signal = False
+    if not linear:
+        parameters.linearization_level = 0
+    return solver
+
+
+def _found(
+    model: Model, options: Options, solver: Any, answer: Any, keeper: _Keeper, asked: str, seconds: float
+) -> Found:
+    name = solver.status_name(answer)
+    response = solver.response_proto
+    work = float(response.deterministic_time)
+    if name == "MODEL_INVALID":
+        raise ValueError(f"the solver refuses the model: {model.cp.validate()}")
+    if name == "INFEASIBLE":
+        return Found({}, 0, 0, "infeasible", "infeasible", seconds, work)
+    objective = keeper.price if model.cp.has_objective() else 0
+    values = keeper.values
+    if not values:
+        return Found({}, 0, 0, "unknown", asked or _limit(options, work), seconds, work)
+    bound = math.ceil(response.best_objective_bound - ROUNDING) if model.cp.has_objective() else 0
+    proven = name == "OPTIMAL" and objective <= bound
+    if proven:
+        stop = "optimal"
+    elif name == "OPTIMAL":
+        stop = "gap reached"
+    else:
+        stop = asked or _limit(options, work)
+    return Found(values, objective, min(objective, bound), "optimal" if proven else "feasible", stop, seconds, work)
+
+
+def _limit(options: Options, work: float) -> str:
+    return "deterministic limit" if work >= 0.98 * options.max_deterministic_time else "time limit"
