@@ -16,6 +16,8 @@ from scheduler.timetable.core.schedule import Status
 
 TURN_SECONDS = 0.05
 """How often a running search is asked to stop once it should [s]."""
+CLOCK_SHARE = 0.98
+"""A search that took this share of its seconds is counted as ended by them [-]."""
 ROUNDING = 1e-6
 """Prices are whole: a bound may be rounded up, but not for the last digits of a float."""
 
@@ -121,7 +123,7 @@ def _found(
     objective = keeper.price if model.cp.has_objective() else 0
     values = keeper.values
     if not values:
-        return Found({}, 0, 0, "unknown", asked or _limit(options, work), seconds, work)
+        return Found({}, 0, 0, "unknown", asked or _limit(options, solver), seconds, work)
     bound = math.ceil(response.best_objective_bound - ROUNDING) if model.cp.has_objective() else 0
     proven = name == "OPTIMAL" and objective <= bound
     if proven:
@@ -129,9 +131,10 @@ def _found(
     elif name == "OPTIMAL":
         stop = "gap reached"
     else:
-        stop = asked or _limit(options, work)
+        stop = asked or _limit(options, solver)
     return Found(values, objective, min(objective, bound), "optimal" if proven else "feasible", stop, seconds, work)
 
 
-def _limit(options: Options, work: float) -> str:
-    return "deterministic limit" if work >= 0.98 * options.max_deterministic_time else "time limit"
+def _limit(options: Options, solver: Any) -> str:
+    """Which limit it was; searches that take turns report less work than the limit counts, so the clock decides."""
+    return "time limit" if solver.wall_time >= CLOCK_SHARE * options.seconds else "deterministic limit"
