@@ -13,9 +13,7 @@ TWO_DAYS = (*DAY, (32, 36), (37, 41))
 
 
 def crew(*units):
-    return Resource.on_shift(
-        "crew", [(begin, end, n) for (begin, end), n in zip(TWO_DAYS, units, strict=False)], 48
-    )
+    return Resource.on_shift("crew", [(begin, end, n) for (begin, end), n in zip(TWO_DAYS, units, strict=False)], 48)
 
 
 def attended(name, duration, split="never", **rest):

@@ -19,15 +19,6 @@ def breaches_of(problem: Problem, placed: tuple[Placed, ...]) -> tuple[Breach, .
     return tuple(sorted(found, key=lambda breach: (breach.begin, breach.end, breach.rule, breach.name)))
 
 
-def price_of(problem: Problem, breaches: tuple[Breach, ...]) -> int:
-    """Price of breaches of lags and resources and, at the dearest of a job's modes, of windows."""
-    jobs = {job.name: max(mode.overtime_price for mode in job.modes) for job in problem.jobs}
-    resources = {resource.name: resource.extra_price for resource in problem.resources}
-    lags = {lag.name: lag.most_price for lag in problem.lags}
-    prices = {"window": jobs, "capacity": resources, "lag": lags}
-    return sum(prices[breach.rule][breach.name] * breach.amount for breach in breaches)
-
-
 def _lags(problem: Problem, placed: tuple[Placed, ...]) -> Iterator[Breach]:
     places = {part.job: part for part in placed}
     for lag in problem.lags:
@@ -37,7 +28,8 @@ def _lags(problem: Problem, placed: tuple[Placed, ...]) -> Iterator[Breach]:
         over = lag.between((before.start, before.end), (after.start, after.end)) - lag.most
         if over > 0:
             target = after.start if lag.kind.endswith("start") else after.end
-            yield Breach("lag", lag.name, target - over, target, over, over * problem.slot_minutes)
+            minutes = over * problem.slot_minutes
+            yield Breach("lag", lag.name, target - over, target, over, minutes, over * lag.most_price)
 
 
 def _windows(problem: Problem, placed: tuple[Placed, ...]) -> Iterator[Breach]:
@@ -49,9 +41,8 @@ def _windows(problem: Problem, placed: tuple[Placed, ...]) -> Iterator[Breach]:
         outside = [gap for piece in part.pieces for gap in _outside(piece, mode.windows)]
         if outside:
             amount = sum(end - begin for begin, end in outside)
-            yield Breach(
-                "window", part.job, outside[0][0], outside[-1][1], amount, amount * problem.slot_minutes
-            )  # fmt: skip
+            minutes, price = amount * problem.slot_minutes, amount * mode.overtime_price
+            yield Breach("window", part.job, outside[0][0], outside[-1][1], amount, minutes, price)
 
 
 def _outside(piece: Window, windows: tuple[Window, ...]) -> Iterator[Window]:
@@ -83,5 +74,6 @@ def _capacity(problem: Problem, resource: Resource, placed: tuple[Placed, ...]) 
         if over > 0 >= was:
             opened, amount = moment, 0
         if over <= 0 < was:
-            yield Breach("capacity", resource.name, opened, moment, amount, amount * problem.slot_minutes)
+            minutes, price = amount * problem.slot_minutes, amount * resource.extra_price
+            yield Breach("capacity", resource.name, opened, moment, amount, minutes, price)
         amount += max(0, over) * (following - moment)

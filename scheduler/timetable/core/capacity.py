@@ -95,7 +95,7 @@ def _add_resource(model: Model, resource: Resource, uses: list[_Use]) -> None:
                 model.slack.append(resource.extra_price * (end - begin) * extra)
             absent.append(_Use(_fixed(model, begin, end - begin, None), missing - extra))
     everything = absent + uses
-    if head == 1 and not lent:
+    if head == 1 and not lent and all(use.amount == 1 for use in uses):
         model.cp.add_no_overlap([use.interval for use in everything])
     else:
         model.cp.add_cumulative([use.interval for use in everything], [use.amount for use in everything], head)

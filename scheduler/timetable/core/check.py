@@ -14,7 +14,7 @@ from scheduler.timetable.core.problem import Problem
 from scheduler.timetable.core.resource import Resource
 from scheduler.timetable.core.schedule import Breach, Placed, Schedule
 
-_Named = dict[tuple[str, str, int], Breach]
+_Named = list[Breach]
 
 
 def check(problem: Problem, schedule: Schedule) -> list[str]:
@@ -29,8 +29,8 @@ def check(problem: Problem, schedule: Schedule) -> list[str]:
     given = [part.job for part in schedule.placed]
     if asked != given:
         return [f"a place for each of {len(asked)} jobs in their order was expected; found {len(given)} places"]
-    named: _Named = {(breach.rule, breach.name, breach.begin): breach for breach in schedule.breaches}
-    faults = ["a breach is named twice"] if len(named) < len(schedule.breaches) else []
+    named = list(schedule.breaches)
+    faults: list[str] = []
     for job, part in zip(problem.jobs, schedule.placed, strict=True):
         if not 0 <= part.mode < len(job.modes):
             return [f"{job.name}: there is no mode {part.mode}"]
@@ -40,15 +40,14 @@ def check(problem: Problem, schedule: Schedule) -> list[str]:
     for resource in problem.resources:
         faults += _resource(problem, resource, schedule, named)
     faults += _price(problem, schedule)
-    return faults + [f"breach not found: {breach.sentence()}" for breach in named.values()]
+    return faults + [f"breach not found: {breach.sentence()}" for breach in named]
 
 
-def _excused(named: _Named, rule: str, name: str, slots: tuple[int, int], amount: int, minutes: int) -> bool:
+def _excused(named: _Named, breach: Breach) -> bool:
     """Whether the schedule names this breach; each name excuses once."""
-    breach = named.get((rule, name, slots[0]))
-    if breach is None or (breach.end, breach.amount, breach.minutes) != (slots[1], amount, minutes):
+    if breach not in named:
         return False
-    del named[rule, name, slots[0]]
+    named.remove(breach)
     return True
 
 
@@ -80,8 +79,10 @@ def _work(job: Job, part: Placed, named: _Named, slot_minutes: int) -> Iterator[
     starts_inside = any(opens <= part.start < closes for opens, closes in mode.windows)
     soft = bool(outside) and starts_inside and len(part.pieces) == 1 and len(outside) <= mode.overtime
     if soft:
-        slots = (outside[0], outside[-1] + 1)
-        soft = _excused(named, "window", job.name, slots, len(outside), len(outside) * slot_minutes)
+        amount = len(outside)
+        price = amount * mode.overtime_price
+        breach = Breach("window", job.name, outside[0], outside[-1] + 1, amount, amount * slot_minutes, price)
+        soft = _excused(named, breach)
     if not soft:
         yield f"{job.name}: worked outside its windows, or across the end of one, in {part.pieces}"
 
@@ -111,7 +112,8 @@ def _lags(problem: Problem, schedule: Schedule, named: _Named) -> Iterator[str]:
         if lag.most is not None and end > begin + lag.most:
             over = end - begin - lag.most
             minutes = over * problem.slot_minutes
-            if not (lag.most_price and _excused(named, "lag", lag.name, (end - over, end), over, minutes)):
+            breach = Breach("lag", lag.name, end - over, end, over, minutes, over * lag.most_price)
+            if not (lag.most_price and _excused(named, breach)):
                 yield f"{lag.name}: {end - begin} between {first} and {second}, at most {lag.most} was expected"
 
 
@@ -141,7 +143,8 @@ def _resource(problem: Problem, resource: Resource, schedule: Schedule, named: _
         amount = sum(used[slot] - there[slot] for slot in range(begin, end))
         lent = max(used[slot] - there[slot] for slot in range(begin, end)) <= resource.extra
         minutes = amount * problem.slot_minutes
-        if not (lent and _excused(named, "capacity", resource.name, (begin, end), amount, minutes)):
+        breach = Breach("capacity", resource.name, begin, end, amount, minutes, amount * resource.extra_price)
+        if not (lent and _excused(named, breach)):
             yield f"{resource.name}: {amount} unit-slots more in use than there are, from {begin} to {end}"
 
 

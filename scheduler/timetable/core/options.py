@@ -24,7 +24,7 @@ class Options:
     workers : int
         Searches that take turns.
     max_deterministic_time : float
-        Limit on the solver's own count of work; about seconds on a quick core.
+        Limit on the solver's own count of work; one unit took 5 to 15 s on two busy cores.
     seconds : float
         Safety net only: a search that it ends may give another schedule next time [s].
     gap : float
@@ -40,7 +40,7 @@ class Options:
     seed: int = 0
     workers: int = 2
     interleave_search: bool = True
-    max_deterministic_time: float = 20.0
+    max_deterministic_time: float = 2.0
     seconds: float = 120.0
     gap: float = 0.0
     progress: Progress | None = None

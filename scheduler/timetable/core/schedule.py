@@ -51,6 +51,8 @@ class Breach:
         Slots too many; for a resource units times slots.
     minutes : int
         The same in minutes; for a resource in minutes of one unit [min].
+    price : int
+        What the breach costs.
     """
 
     rule: Rule
@@ -59,13 +61,14 @@ class Breach:
     end: int
     amount: int
     minutes: int
+    price: int
 
     def sentence(self) -> str:
         """Say it in one sentence.
 
         Examples
         --------
-        >>> Breach("capacity", "crew", 96, 108, 12, 60).sentence()
+        >>> Breach("capacity", "crew", 96, 108, 12, 60, 24).sentence()
         'crew: 60 unit-minutes more than there are, from slot 96 to 108'
         """
         what = {
@@ -96,7 +99,8 @@ class Schedule:
     breaches : tuple of Breach
         Soft rules it breaks; only where they were relaxed.
     breach_bound : int
-        No schedule breaks soft rules for a lower price than this.
+        No schedule breaks soft rules for a lower price than this, units being lent for whole cells of time (one slot
+        up to a horizon of 400 slots, and as many more as it takes to have about 400 cells).
     seconds, deterministic : float
         Wall time [s] and the solver's own count of work.
     """

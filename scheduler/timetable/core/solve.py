@@ -5,7 +5,7 @@ from __future__ import annotations
 import time
 from dataclasses import replace
 
-from scheduler.timetable.core.breaches import breaches_of, price_of
+from scheduler.timetable.core.breaches import breaches_of
 from scheduler.timetable.core.capacity import add_resources
 from scheduler.timetable.core.check import check
 from scheduler.timetable.core.hints import hint
@@ -86,9 +86,9 @@ def solve_or_name(problem: Problem, options: Options | None = None) -> Schedule:
     return replace(named, breaches=breaches_of(problem, named.placed), breach_bound=least.bound)
 
 
-def breach_price(problem: Problem, schedule: Schedule) -> int:
+def breach_price(schedule: Schedule) -> int:
     """Price of the soft rules that a schedule breaks."""
-    return price_of(problem, schedule.breaches)
+    return sum(breach.price for breach in schedule.breaches)
 
 
 def _model(problem: Problem, *, relaxed: bool) -> tuple[Model, Expression]:
