@@ -4,7 +4,7 @@ from dataclasses import replace
 
 import pytest
 
-from scheduler.timetable.core import Demand, Evenness, Job, Lag, Mode, Problem, Resource, Stretch, check, solve
+from scheduler.timetable.core import Demand, Evenness, Hold, Job, Lag, Mode, Problem, Resource, Stretch, check, solve
 
 WINDOWS = ((0, 4), (6, 10), (12, 18))
 SPLIT = Mode(7, (Demand("crew"),), WINDOWS, split="too_long", least_piece=2)
@@ -17,6 +17,7 @@ PROBLEM = Problem(
     ),
     (Lag("short", "other", least=1, most=9),),
     (Resource("crew", 1), Resource("drum", 2, (Stretch(0, 2, 1),), named=True)),
+    (Hold("kept", "drum", "short", "other"),),
     (Evenness("drum", ((0, 10), (10, 20)), 1),),
     makespan_price=1,
 )
@@ -55,6 +56,9 @@ def test_sound_schedule_has_no_fault():
         (moved("other", 15, 18), "at most 9 was expected"),
         (changed("other", units=()), "by name were expected"),
         (changed("other", units=(("drum", (3,)),)), "by name were expected"),
+        (replace(SOUND, held=()), "1 holds in their order"),
+        (replace(SOUND, held=(replace(SOUND.held[0], end=1),)), "hold kept:"),
+        (replace(SOUND, held=(replace(SOUND.held[0], units=()),)), "hold kept: 1 of drum by name"),
         (replace(SOUND, objective=SOUND.objective + 1), "the price is"),
         (replace(SOUND, terms={"early": 0}), "its terms add up to 0"),
         (replace(SOUND, bound=SOUND.objective + 1), "is above the price"),
@@ -104,6 +108,9 @@ def test_too_much_of_a_resource_is_caught():
         (lambda: Problem(9, (Job.single("a", 1, (Demand("b", 3),)),), (), (Resource("b", 2),)), "3 of 'b' asked"),
         (lambda: Problem(9, (Job.single("a", 1),), (Lag("a", "b"),)), "there is no job 'b'"),
         (lambda: Problem(9, (Job.single("a", 1, start_price=10**7),)), "prices up to 1000000"),
+        (lambda: Hold("h", "b", "a", "a", 0), "an amount of at least 1"),
+        (lambda: Problem(9, (Job.single("a", 1),), (), (), (Hold("h", "b", "a", "a"),)), "there is no resource 'b'"),
+        (lambda: Problem(9, (Job.single("a", 1),), (), (), (Hold("h", "b", "a", "z"),)), "there is no job 'z'"),
         (lambda: Problem(0, ()), "a horizon of at least 1"),
         (
             lambda: Problem(9, (Job("a", (Mode(3, (Demand("b"),), ((0, 2),), split="priced"),)),), (),

@@ -1,8 +1,10 @@
 """Lateness, tariff, modes, even days, named units, lags: small problems priced by hand."""
 
+from itertools import pairwise
+
 import pytest
 
-from scheduler.timetable.core import Demand, Evenness, Job, Lag, Mode, Problem, Resource, check, solve
+from scheduler.timetable.core import Demand, Evenness, Hold, Job, Lag, Mode, Problem, Resource, check, solve
 
 
 def solved(problem):
@@ -65,7 +67,7 @@ def test_alike_units_are_named_without_overlap():
             held.setdefault(unit, []).append((part.start, part.end))
     for spans in held.values():
         spans.sort()
-        assert all(end <= begin for (_, end), (begin, _) in zip(spans, spans[1:], strict=False))
+        assert all(end <= begin for (_, end), (begin, _) in pairwise(spans))
 
 
 @pytest.mark.parametrize(
@@ -94,3 +96,17 @@ def test_job_of_no_length_needs_nothing():
     other = Job.single("other", 4, (Demand("one"),), start_price=1)
     schedule = solved(Problem(9, (other, done), resources=(Resource("one", 1),)))
     assert schedule.objective == 0
+
+
+def test_full_vessel_is_held_until_it_is_emptied():
+    """Emptying waits for the shift at 20, so the second filling waits too, unless there is a second vessel."""
+    jobs, lags, holds = [], [], []
+    for k in range(2):
+        jobs += [Job.single(f"fill {k}", 2, start_price=5), Job.single(f"empty {k}", 1, (), ((20, 24), (40, 44)))]
+        lags.append(Lag(f"fill {k}", f"empty {k}", least=6))
+        holds.append(Hold(f"batch {k}", "vessel", f"fill {k}", f"empty {k}"))
+    for vessels, second in ((1, 21), (2, 0)):
+        resources = (Resource("vessel", vessels, named=True),)
+        schedule = solved(Problem(48, tuple(jobs), tuple(lags), resources, tuple(holds)))
+        assert sorted(schedule[f"fill {k}"].start for k in range(2)) == [0, second]
+        assert {held.units for held in schedule.held} == {(unit,) for unit in range(1, vessels + 1)}

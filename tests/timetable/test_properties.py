@@ -6,6 +6,7 @@ from hypothesis import strategies as st
 from scheduler.timetable.core import (
     Demand,
     Evenness,
+    Hold,
     Job,
     Lag,
     Mode,
@@ -63,8 +64,10 @@ def problems(draw):
     )
     crew = Resource("crew", 2, calendar, extra=draw(st.integers(0, 1)), extra_price=draw(st.integers(1, 3)))
     drum = Resource("drum", draw(st.integers(1, 2)), named=True)
+    last = draw(st.sampled_from([*names, ""]))
+    holds = (Hold("full", draw(st.sampled_from(["crew", "drum"])), "a", last),) if last else ()
     even = (Evenness("crew", ((0, 5), (5, 10)), 1),) if draw(st.booleans()) else ()
-    return Problem(HORIZON, jobs, tuple(lags), (crew, drum), even, makespan_price=draw(small))
+    return Problem(HORIZON, jobs, tuple(lags), (crew, drum), holds, even, makespan_price=draw(small))
 
 
 @given(problems())

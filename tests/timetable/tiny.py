@@ -67,6 +67,8 @@ def sound(problem: Problem, places) -> bool:
             return False
         if lag.most is not None and between > lag.most:
             return False
+    if any(at[hold.first][1] > at[hold.last][2] for hold in problem.holds):
+        return False
     for resource in problem.resources:
         for slot in range(problem.horizon):
             there = next((s.capacity for s in resource.calendar if s.begin <= slot < s.end), resource.capacity)
@@ -75,6 +77,9 @@ def sound(problem: Problem, places) -> bool:
                     if demand.resource == resource.name:
                         holds = slot in slots if demand.held == "work" else start <= slot < end
                         there -= demand.amount * holds
+            for hold in problem.holds:
+                if hold.resource == resource.name:
+                    there -= hold.amount * (at[hold.first][1] <= slot < at[hold.last][2])
             if there < 0:
                 return False
     return True

@@ -63,6 +63,10 @@ def _capacity(problem: Problem, resource: Resource, placed: tuple[Placed, ...]) 
             if demand.resource == resource.name:
                 for begin, end in part.pieces if demand.held == "work" else ((part.start, part.end),):
                     steps += [(begin, demand.amount), (end, -demand.amount)]
+    places = {part.job: part for part in placed}
+    for hold in problem.holds:
+        if hold.resource == resource.name:
+            steps += [(places[hold.first].start, hold.amount), (places[hold.last].end, -hold.amount)]
     moments = sorted({moment for moment, _ in steps})
     changes = dict.fromkeys(moments, 0)
     for moment, change in steps:

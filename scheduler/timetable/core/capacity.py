@@ -29,6 +29,10 @@ def add_resources(model: Model) -> None:
             for demand in mode.demands:
                 if mode.duration:
                     uses[demand.resource] += _uses(model, variables, number, demand)
+    for hold in model.problem.holds:
+        first, last = model.jobs[hold.first], model.jobs[hold.last]
+        size = model.integer(0, model.problem.horizon, f"hold {hold.name}")
+        uses[hold.resource].append(_Use(_flexible(model, first.start, size, last.end, None), hold.amount))
     for resource in model.problem.resources:
         if uses[resource.name]:
             _add_resource(model, resource, uses[resource.name])

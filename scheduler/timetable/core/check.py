@@ -7,6 +7,7 @@ unseen. Soft rules may be broken where the schedule names exactly that breach.
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import dataclass
 from itertools import pairwise
 
 from scheduler.timetable.core.job import Job, Mode
@@ -29,6 +30,8 @@ def check(problem: Problem, schedule: Schedule) -> list[str]:
     given = [part.job for part in schedule.placed]
     if asked != given:
         return [f"a place for each of {len(asked)} jobs in their order was expected; found {len(given)} places"]
+    if [held.hold for held in schedule.held] != [hold.name for hold in problem.holds]:
+        return [f"{len(problem.holds)} holds in their order were expected; found {len(schedule.held)}"]
     named = list(schedule.breaches)
     faults: list[str] = []
     for job, part in zip(problem.jobs, schedule.placed, strict=True):
@@ -36,6 +39,7 @@ def check(problem: Problem, schedule: Schedule) -> list[str]:
             return [f"{job.name}: there is no mode {part.mode}"]
         faults += _place(problem, job, part)
         faults += _work(job, part, named, problem.slot_minutes)
+    faults += _holds(problem, schedule)
     faults += _lags(problem, schedule, named)
     for resource in problem.resources:
         faults += _resource(problem, resource, schedule, named)
@@ -117,6 +121,15 @@ def _lags(problem: Problem, schedule: Schedule, named: _Named) -> Iterator[str]:
                 yield f"{lag.name}: {end - begin} between {first} and {second}, at most {lag.most} was expected"
 
 
+def _holds(problem: Problem, schedule: Schedule) -> Iterator[str]:
+    """Holds last from the start of their first to the end of their last job."""
+    places = {part.job: part for part in schedule.placed}
+    for hold, held in zip(problem.holds, schedule.held, strict=True):
+        asked = (places[hold.first].start, places[hold.last].end)
+        if (held.start, held.end) != asked or held.start > held.end:
+            yield f"hold {hold.name}: {asked[0]} to {asked[1]} was expected; found {held.start} to {held.end}"
+
+
 def _resource(problem: Problem, resource: Resource, schedule: Schedule, named: _Named) -> Iterator[str]:
     there = [resource.capacity] * problem.horizon
     for stretch in resource.calendar:
@@ -124,20 +137,12 @@ def _resource(problem: Problem, resource: Resource, schedule: Schedule, named: _
             there[slot] = stretch.capacity
     used = [0] * problem.horizon
     owner: dict[tuple[int, int], str] = {}
-    for job, part in zip(problem.jobs, schedule.placed, strict=True):
-        for demand in job.modes[part.mode].demands:
-            if demand.resource != resource.name:
-                continue
-            slots = range(part.start, part.end)
-            if demand.held == "work":
-                slots_worked = [slot for begin, end in part.pieces for slot in range(begin, end)]
-            else:
-                slots_worked = list(slots)
-            for slot in slots_worked:
-                if 0 <= slot < problem.horizon:
-                    used[slot] += demand.amount
-            if resource.named and slots:
-                yield from _units(resource, part, demand.amount, owner)
+    for use in _uses(problem, resource, schedule):
+        for slot in use.slots:
+            if 0 <= slot < problem.horizon:
+                used[slot] += use.amount
+        if resource.named and use.slots:
+            yield from _units(resource, use, owner)
     over = [slot for slot in range(problem.horizon) if used[slot] > there[slot]]
     for begin, end in _runs(over):
         amount = sum(used[slot] - there[slot] for slot in range(begin, end))
@@ -148,15 +153,36 @@ def _resource(problem: Problem, resource: Resource, schedule: Schedule, named: _
             yield f"{resource.name}: {amount} unit-slots more in use than there are, from {begin} to {end}"
 
 
-def _units(resource: Resource, part: Placed, amount: int, owner: dict[tuple[int, int], str]) -> Iterator[str]:
-    units = dict(part.units).get(resource.name, ())
-    if len(set(units)) != amount or not all(1 <= unit <= resource.capacity for unit in units):
-        yield f"{part.job}: {amount} of {resource.name} by name were expected; found {units}"
-    for unit in units:
-        for slot in range(part.start, part.end):
-            other = owner.setdefault((unit, slot), part.job)
-            if other != part.job:
-                yield f"{resource.name} {unit}: has both {other} and {part.job} at {slot}"
+@dataclass(frozen=True, slots=True)
+class _Use:
+    """Slots in which something has some units, and the numbers it is given."""
+
+    name: str
+    slots: list[int]
+    amount: int
+    units: tuple[int, ...]
+
+
+def _uses(problem: Problem, resource: Resource, schedule: Schedule) -> Iterator[_Use]:
+    for job, part in zip(problem.jobs, schedule.placed, strict=True):
+        for demand in job.modes[part.mode].demands:
+            if demand.resource == resource.name:
+                stretches = part.pieces if demand.held == "work" else ((part.start, part.end),)
+                slots = [slot for begin, end in stretches for slot in range(begin, end)]
+                yield _Use(job.name, slots, demand.amount, dict(part.units).get(resource.name, ()))
+    for hold, held in zip(problem.holds, schedule.held, strict=True):
+        if hold.resource == resource.name:
+            yield _Use(f"hold {hold.name}", list(range(held.start, held.end)), hold.amount, held.units)
+
+
+def _units(resource: Resource, use: _Use, owner: dict[tuple[int, int], str]) -> Iterator[str]:
+    if len(set(use.units)) != use.amount or not all(1 <= unit <= resource.capacity for unit in use.units):
+        yield f"{use.name}: {use.amount} of {resource.name} by name were expected; found {use.units}"
+    for unit in use.units:
+        for slot in use.slots:
+            other = owner.setdefault((unit, slot), use.name)
+            if other != use.name:
+                yield f"{resource.name} {unit}: has both {other} and {use.name} at {slot}"
                 break
 
 

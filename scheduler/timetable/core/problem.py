@@ -6,6 +6,7 @@ from collections import Counter
 from collections.abc import Iterable
 from dataclasses import dataclass
 
+from scheduler.timetable.core.hold import Hold
 from scheduler.timetable.core.job import Job, Mode, Window, check_windows, require
 from scheduler.timetable.core.lag import Lag
 from scheduler.timetable.core.resource import Resource
@@ -58,6 +59,7 @@ class Problem:
     jobs: tuple[Job, ...]
     lags: tuple[Lag, ...] = ()
     resources: tuple[Resource, ...] = ()
+    holds: tuple[Hold, ...] = ()
     evenness: tuple[Evenness, ...] = ()
     makespan_price: int = 0
     slot_minutes: int = 5
@@ -66,6 +68,7 @@ class Problem:
         require(self.horizon >= 1, f"a horizon of at least 1 slot was expected; found {self.horizon}")
         _once((job.name for job in self.jobs), "job")
         _once((resource.name for resource in self.resources), "resource")
+        _once((hold.name for hold in self.holds), "hold")
         self._check_names()
         prices = [self.makespan_price, *(part.price for part in self.evenness), *(lag.most_price for lag in self.lags)]
         prices += [resource.extra_price for resource in self.resources]
@@ -80,6 +83,10 @@ class Problem:
         for lag in self.lags:
             for name in (lag.before, lag.after):
                 require(name in names, f"lag {lag.name}: there is no job {name!r}")
+        for hold in self.holds:
+            for name in (hold.first, hold.last):
+                require(name in names, f"hold {hold.name!r}: there is no job {name!r}")
+            _check_amount(f"hold {hold.name!r}", hold.resource, hold.amount, resources)
         for part in self.evenness:
             require(part.resource in resources, f"evenness: there is no resource {part.resource!r}")
         for job in self.jobs:
@@ -106,12 +113,16 @@ class Problem:
 def _check_demands(job: Job, mode: Mode, resources: dict[str, Resource]) -> None:
     for demand in mode.demands:
         where = f"job {job.name!r}"
-        require(demand.resource in resources, f"{where}: there is no resource {demand.resource!r}")
+        _check_amount(where, demand.resource, demand.amount, resources)
         resource = resources[demand.resource]
-        most = resource.capacity + resource.extra
-        require(demand.amount <= most, f"{where}: {demand.amount} of {resource.name!r} asked, there are {most}")
         held = demand.held == "span" or mode.split == "never"
         require(held or not resource.named, f"{where}: named {resource.name!r} must be held over the whole span")
+
+
+def _check_amount(where: str, name: str, amount: int, resources: dict[str, Resource]) -> None:
+    require(name in resources, f"{where}: there is no resource {name!r}")
+    most = resources[name].capacity + resources[name].extra
+    require(amount <= most, f"{where}: {amount} of {name!r} asked, there are {most}")
 
 
 def _once(names: Iterable[str], what: str) -> None:

@@ -36,6 +36,16 @@ class Placed:
 
 
 @dataclass(frozen=True, slots=True)
+class Held:
+    """When a hold lasts [slots], and for named resources the numbers of its units, from 1."""
+
+    hold: str
+    start: int
+    end: int
+    units: tuple[int, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
 class Breach:
     """A soft rule that could not be kept.
 
@@ -94,6 +104,8 @@ class Schedule:
     status, stop : str
         ``optimal``, ``feasible``, ``infeasible`` or ``unknown``; and what ended the search: ``optimal``,
         ``infeasible``, ``gap reached``, ``deterministic limit``, ``time limit``, ``stopped`` or ``interrupted``.
+    held : tuple of Held
+        In the order of the problem's holds.
     terms : dict of str to int
         The objective by what it is made of.
     breaches : tuple of Breach
@@ -111,6 +123,7 @@ class Schedule:
     gap: float
     status: Status
     stop: str
+    held: tuple[Held, ...] = ()
     terms: dict[str, int] = field(default_factory=dict)
     breaches: tuple[Breach, ...] = ()
     breach_bound: int = 0

@@ -14,7 +14,7 @@ from scheduler.timetable.core.objective import objective
 from scheduler.timetable.core.options import Options
 from scheduler.timetable.core.price import terms_of
 from scheduler.timetable.core.problem import Problem
-from scheduler.timetable.core.schedule import Placed, Schedule, Status, gap_of
+from scheduler.timetable.core.schedule import Schedule, Status, gap_of
 from scheduler.timetable.core.search import Found, search
 from scheduler.timetable.core.units import name_units
 
@@ -117,7 +117,7 @@ def _priced(problem: Problem, model: Model, least: Found, last: Found) -> Found:
 
 
 def _schedule(problem: Problem, model: Model, found: Found, options: Options, started: float) -> Schedule:
-    placed: tuple[Placed, ...] = name_units(problem, model.placed(found.values))
+    placed, held = name_units(problem, model.placed(found.values))
     return Schedule(
         placed=placed,
         objective=found.objective,
@@ -125,6 +125,7 @@ def _schedule(problem: Problem, model: Model, found: Found, options: Options, st
         gap=gap_of(found.objective, found.bound),
         status=found.status,
         stop=found.stop,
+        held=held,
         terms=terms_of(problem, placed),
         seconds=time.perf_counter() - started,
         deterministic=found.deterministic,
