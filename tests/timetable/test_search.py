@@ -22,7 +22,7 @@ def crowd(count=40):
 
 
 def test_same_problem_same_schedule():
-    problem, options = crowd(), Options(max_deterministic_time=1.0, seed=5)
+    problem, options = crowd(), Options(max_deterministic_time=0.05, seed=5)
     first, second = solve(problem, options), solve(problem, options)
     assert first.placed == second.placed
     assert (first.objective, first.bound, first.stop) == (second.objective, second.bound, second.stop)

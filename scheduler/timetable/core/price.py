@@ -37,3 +37,10 @@ def busiest(evenness: Evenness, jobs: dict[str, Job], placed: tuple[Placed, ...]
                     if begin <= part.start < end:
                         loads[number] += demand.amount * length
     return max(loads, default=0)
+
+
+def floor_of(problem: Problem) -> int:
+    """A price that no schedule is below, without any search: the cheapest mode and start of each job."""
+    return sum(
+        min(mode.price for mode in job.modes) + min([0, *(cost for _, cost in job.start_costs)]) for job in problem.jobs
+    )

@@ -66,18 +66,31 @@ def search(model: Model, options: Options, *, linear: bool = True) -> Found:
     started = time.perf_counter()
     solver = _solver(options, linear)
     keeper = _Keeper(model, options, started)
+    if options.stop is not None and options.stop.is_set():
+        return Found({}, 0, 0, "unknown", "stopped", 0.0, 0.0)
+    name, asked = attend(solver, model.cp, options, keeper)
+    return _found(model, options, solver, name, keeper, asked, time.perf_counter() - started)
+
+
+def attend(solver: Any, cp: Any, options: Options, keeper: Any = None) -> tuple[str, str]:
+    """Run a solver beside this thread and ask it to stop on the stop event or on Ctrl-C.
+
+    Returns
+    -------
+    tuple of str
+        Name of the solver's status; and ``stopped``, ``interrupted`` or nothing.
+    """
+    solver.parameters.catch_sigint_signal = False
     done = threading.Event()
     result: list[Any] = []
 
     def work() -> None:
         try:
-            result.append(solver.solve(model.cp, keeper))
+            result.append(solver.solve(cp, keeper))
         finally:
             done.set()
 
     asked = ""
-    if options.stop is not None and options.stop.is_set():
-        return Found({}, 0, 0, "unknown", "stopped", 0.0, 0.0)
     thread = threading.Thread(target=work, daemon=True)
     thread.start()
     while not done.is_set():
@@ -92,7 +105,7 @@ def search(model: Model, options: Options, *, linear: bool = True) -> Found:
     thread.join()
     if not result:
         raise RuntimeError("the solver ended without an answer")
-    return _found(model, options, solver, result[0], keeper, asked, time.perf_counter() - started)
+    return solver.status_name(result[0]), asked
 
 
 def _solver(options: Options, linear: bool) -> Any:
@@ -104,16 +117,14 @@ def _solver(options: Options, linear: bool) -> Any:
     parameters.max_deterministic_time = options.max_deterministic_time
     parameters.max_time_in_seconds = options.seconds
     parameters.relative_gap_limit = options.gap
-    parameters.catch_sigint_signal = False
     if not linear:
         parameters.linearization_level = 0
     return solver
 
 
 def _found(
-    model: Model, options: Options, solver: Any, answer: Any, keeper: _Keeper, asked: str, seconds: float
+    model: Model, options: Options, solver: Any, name: str, keeper: _Keeper, asked: str, seconds: float
 ) -> Found:
-    name = solver.status_name(answer)
     response = solver.response_proto
     work = float(response.deterministic_time)
     if name == "MODEL_INVALID":

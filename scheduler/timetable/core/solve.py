@@ -8,11 +8,12 @@ from dataclasses import replace
 from scheduler.timetable.core.breaches import breaches_of
 from scheduler.timetable.core.capacity import add_resources
 from scheduler.timetable.core.check import check
+from scheduler.timetable.core.dispatch import dispatch
 from scheduler.timetable.core.hints import hint
 from scheduler.timetable.core.model import Expression, Model
 from scheduler.timetable.core.objective import objective
 from scheduler.timetable.core.options import Options
-from scheduler.timetable.core.price import terms_of
+from scheduler.timetable.core.price import floor_of, terms_of
 from scheduler.timetable.core.problem import Problem
 from scheduler.timetable.core.schedule import Schedule, Status, gap_of
 from scheduler.timetable.core.search import Found, search
@@ -38,9 +39,14 @@ def solve(problem: Problem, options: Options | None = None) -> Schedule:
     if model.impossible:
         return _without("infeasible", started, options)
     model.cp.minimize(price)
-    known = _known(problem, options)
+    known, asked = _known(problem, options), ""
+    if not known and not (options.stop and options.stop.is_set()):
+        known, asked = _dispatched(problem, model, options)
     if known:
         hint(model, known.placed, options)
+    if asked:
+        found = Found({}, 0, 0, "unknown", asked, time.perf_counter() - started, 0.0)
+        return _kept(known, found, options) if known else _without("unknown", started, options, asked)
     found = search(model, options, linear=not problem.makespan_only)
     if known and found.status != "infeasible" and (not found.values or known.objective < found.objective):
         return _kept(known, found, options)
@@ -106,27 +112,41 @@ def _known(problem: Problem, options: Options) -> Schedule | None:
         return None
     terms = terms_of(problem, known.placed) if {p.job for p in known.placed} == {j.name for j in problem.jobs} else {}
     price = sum(terms.values())
-    fresh = replace(known, terms=terms, objective=price, bound=min(0, price), status="feasible")
+    fresh = replace(known, terms=terms, objective=price, bound=floor_of(problem), status="feasible")
     return fresh if terms and not check(problem, fresh) else None
+
+
+def _dispatched(problem: Problem, model: Model, options: Options) -> tuple[Schedule | None, str]:
+    """A first schedule without a thought for prices, and whether someone ended its making."""
+    placed, asked = dispatch(model, options)
+    if not placed:
+        return None, asked
+    terms = terms_of(problem, placed)
+    placed, held = name_units(problem, placed)
+    return Schedule(placed, sum(terms.values()), floor_of(problem), 0.0, "feasible", "", held=held, terms=terms), asked
 
 
 def _priced(problem: Problem, model: Model, least: Found, last: Found) -> Found:
     """The schedule of the first step, with its price, where the second found none."""
     price = sum(terms_of(problem, model.placed(least.values)).values())
-    return replace(last, values=least.values, objective=price, bound=min(0, price), status="feasible")
+    return replace(last, values=least.values, objective=price, bound=floor_of(problem), status="feasible")
 
 
 def _schedule(problem: Problem, model: Model, found: Found, options: Options, started: float) -> Schedule:
+    """The schedule of the values found; its price from its places, for the solver's may have slack in it."""
     placed, held = name_units(problem, model.placed(found.values))
+    terms = terms_of(problem, placed)
+    price = sum(terms.values())
+    proven = found.status == "optimal" or price <= found.bound
     return Schedule(
         placed=placed,
-        objective=found.objective,
-        bound=found.bound,
-        gap=gap_of(found.objective, found.bound),
-        status=found.status,
-        stop=found.stop,
+        objective=price,
+        bound=min(price, found.bound),
+        gap=gap_of(price, found.bound),
+        status="optimal" if proven else "feasible",
+        stop="optimal" if proven else found.stop,
         held=held,
-        terms=terms_of(problem, placed),
+        terms=terms,
         seconds=time.perf_counter() - started,
         deterministic=found.deterministic,
         seed=options.seed,
