@@ -1,0 +1,1 @@
+"""The coming weeks to the minute."""
