@@ -7,9 +7,12 @@ from dataclasses import dataclass
 
 from models.calendar import Week
 from models.plan import Margin, Plan
+from scheduler.errors import NoPlanError
 from scheduler.forecast import Forecast, OrderChance
 
 ROUNDS = 10
+INTERRUPTED = "interrupted"
+"""What a plan gives as the reason of its stop when the search for it was ended from the keyboard."""
 MOST_SHARE = 1.5
 """More than this is not kept ready beyond a kilogram delivered [-]."""
 LEAST_STEP = 0.03
@@ -81,7 +84,7 @@ def plan_surely(wanted: float, make: Callable[[Margins], Plan], draw: Callable[[
     week whose worst delivery gets little in nine draws of ten has its picks moved a day ahead; otherwise its share is
     raised by what is lacking. A strain's other weeks keep a part of the largest share, since a plan takes from the
     neighbours what a week needs. Of all plans on the way the one that lacks least of the chances is kept, and of equal
-    ones the one that earns most.
+    ones the one that earns most. An interrupt from the keyboard ends it with the best so far.
     """
     if not 0 < wanted < 1:
         raise ValueError(f"a chance above 0 and below 1 was expected; found {wanted:g}")
@@ -90,13 +93,16 @@ def plan_surely(wanted: float, make: Callable[[Margins], Plan], draw: Callable[[
     plain_forecast = found = draw(plan)
     best = (_rank(plan, found, wanted), plan, found, margins)
     rounds = 1
-    while rounds < ROUNDS and best[0][0] < 0:
+    while rounds < ROUNDS and best[0][0] < 0 and plan.report.stop != INTERRUPTED:
         raised = raise_margins(margins, found, wanted)
         if raised == margins:
             break
         margins = raised
-        plan = make(margins)
-        found = draw(plan)
+        try:
+            plan = make(margins)
+            found = draw(plan)
+        except (KeyboardInterrupt, NoPlanError):
+            break
         rounds += 1
         best = max(best, (_rank(plan, found, wanted), plan, found, margins), key=lambda item: item[0])
     _, plan, found, kept = best

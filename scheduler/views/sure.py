@@ -48,7 +48,8 @@ def show_sure(console: Console, farm: Farm, safety: SurePlan) -> None:
     for code in dict.fromkeys(code for code, _ in sorted(safety.margins)):
         mine = [margin for (strain, _), margin in safety.margins.items() if strain == code]
         shares, days = [one.share for one in mine], max(one.days for one in mine)
-        words = f"{code}: in {len(mine)} weeks {min(shares):.0%} to {max(shares):.0%} more is kept ready than delivered"
+        weeks = f"{len(mine)} week{'s' * (len(mine) != 1)}"
+        words = f"{code}: in {weeks} {min(shares):.0%} to {max(shares):.0%} more is kept ready than delivered"
         screen.wrapped(f"{words}, picked up to {days} days ahead." if days else f"{words}.", "- ")
     if not safety.unreachable:
         return
